@@ -1,0 +1,43 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#pragma once
+#include "planner/core/alloy_report.h"
+#include "planner/core/families.h"
+#include "planner/core/window.h"
+
+namespace soak {
+
+// The kinds of limit, as stored in CycleLimit::kind. `phase` is a label, a group of labels ("carbide", "ferrite"), or
+// an element; `margin_K` always points into the safe side.
+//   dissolved            floor    the highest temperature at which `phase` vanishes on heating, + margin
+//   not_yet_formed       ceiling  the lowest temperature above which `phase` forms from the matrix, - margin
+//   below_solidus        ceiling  first liquid on heating, - margin
+//   above_ae1, above_ae3 floor    first austenite, last ferrite on heating, + margin
+//   below_ae1            ceiling  first austenite on heating, - margin
+//   fraction             both     vol% of `phase` at least `low` and at most `high`
+//   matrix_content       both     wt% of element `phase` in the matrix at least `low` and at most `high`
+//   retained_austenite   ceiling  vol% after quenching to 25 °C at most `high`
+//   specification        both     °C, at least `low` and at most `high`, set by people
+//   furnace              both     the furnace's own range; `low` and `high` narrow it when given
+// A kind that is none of these makes the limit "not computed".
+
+/// What a limit is evaluated with.
+struct LimitContext {
+    AlloyReport* report = nullptr;  ///< nullptr when no physics could be computed; then `report_missing` says why
+    QString report_missing;
+    const Analysis* analysis = nullptr;
+    QString family;
+    const FamilyBook* book = nullptr;
+    Furnace furnace;
+    double reference_C = 0;  ///< the standing setpoint: a fraction may be met in more than one range
+};
+
+/// One stored limit gives one Limit, or two when it binds from both sides. Never fails: what could not be computed says
+/// so in the limit.
+std::vector<Limit> evaluate(const CycleLimit& limit, const LimitContext& context);
+
+/// Labels that a group word stands for; a word that is no group stands for itself.
+QStringList labelsOf(const QString& phase);
+/// "sigma dissolved + 20 K", "specification minimum 1040 °C"
+QString causeText(const CycleLimit& limit, Side side);
+
+}  // namespace soak
