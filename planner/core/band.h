@@ -23,10 +23,4 @@ double stepDown_C(const Furnace& furnace, double temperature_C);
 /// One controller step as a difference, K.
 double step_K(const Furnace& furnace);
 
-/// "1030 °C (1886 °F)" in the controller's unit first; differences "±8 °C" or "±14 °F" convert by 1.8 only.
-QString temperatureText(double temperature_C, bool fahrenheit_first = false);
-QString differenceText(double difference_K, bool fahrenheit_first = false);
-/// Celsius alone, true minus, rounded to `decimals`: "1093.6 °C".
-QString celsius(double temperature_C, int decimals = 0);
-
 }  // namespace soak

@@ -11,22 +11,30 @@
 
 namespace soak {
 
+/// A treatment that is judged for a family, and what to look for when no cycle is given.
+struct FamilyKind {
+    QString name;            ///< cycle kind: "solution-anneal"
+    double reference_C = 0;  ///< usual in the trade, to start looking from
+    std::vector<CycleLimit> limits;
+};
+
 /// What the planner knows of one family of grades; rows of data/families.toml.
 struct Family {
-    QString name;        ///< as in the grade library: "duplex"
-    QString data_set;    ///< folder under thermo/data: "ferrous"
-    PhaseChoice phases;  ///< phases asked for or left out by the family's rule
-    QString phase_rule;  ///< that rule in words, with its source
-    std::map<QString, QStringList>
-        needs;  ///< limit kind -> elements without which it is not computed; "*" = every kind
-    std::map<QString, std::vector<CycleLimit>> limits;  ///< cycle kind -> limits when no cycle is given
-    std::map<QString, double> reference_C;  ///< cycle kind -> usual temperature of the trade, to start looking from
+    QString name;                   ///< as in the grade library: "duplex"
+    QString data_set;               ///< folder under thermo/data: "ferrous"
+    PhaseChoice phases;             ///< phases asked for or left out by the family's rule
+    QString phase_rule;             ///< that rule in words, with its source
+    QStringList needs;              ///< elements without which no computed limit is trusted
+    std::vector<FamilyKind> kinds;  ///< the usual one first
+
+    const FamilyKind* find(const QString& kind) const;
 };
 
 /// Scatter of computed minus published for one family and kind of limit; rows of data/model_scatter.toml.
 struct ModelScatter {
-    double mean_K = 0, scatter_K = 0;
-    int rows = 0;
+    double mean = 0, scatter = 0;  ///< K, or vol% when `in_volume_percent`
+    bool in_volume_percent = false;
+    int rows = 0;  ///< published values behind it
     QString source;
 };
 
@@ -38,13 +46,15 @@ struct LaboratoryScatter {
 /// The planner's own tables, read once and shared between threads.
 struct FamilyBook {
     std::vector<Family> families;
-    std::map<std::pair<QString, QString>, ModelScatter> scatter;  ///< (family, limit kind)
-    std::map<std::string, LaboratoryScatter> laboratory;          ///< by element; "*" = every other
-    std::map<QString, std::pair<double, double>> sweep_C;         ///< data set -> lowest and highest temperature swept
+    std::map<std::pair<QString, QString>, ModelScatter>
+        scatter;                                           ///< (family or "*", "dissolved(sigma)" or "dissolved")
+    double unknown_scatter_K = 0, least_scatter_K = 0;     ///< without a row; with fewer than 5
+    std::map<std::string, LaboratoryScatter> laboratory;   ///< by element; "*" = every other
+    std::map<QString, std::pair<double, double>> sweep_C;  ///< data set -> lowest and highest temperature swept
 
     const Family* find(const QString& name) const;
-    /// Nothing known about the pair: a wide scatter that says so.
-    ModelScatter scatterOf(const QString& family, const QString& kind) const;
+    /// The row for this family, kind and phase, the nearest general one, or a wide scatter that says so.
+    ModelScatter scatterOf(const QString& family, const QString& kind, const QString& phase) const;
     double laboratory_wt(const std::string& element, double content_wt) const;
 };
 /// Reads planner/core/data; Fault::data names the file and the entry.
