@@ -1,0 +1,30 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#pragma once
+#include <QString>
+
+#include "planner/core/window.h"
+
+namespace soak::desk {
+
+/// How temperatures are written on the screen. Differences convert by 1.8 only; in Celsius they are written in K.
+struct Units {
+    bool fahrenheit = false;
+
+    /// "1060 °C" or "1940 °F", thin space before the unit, true minus sign.
+    QString temperature(double celsius) const;
+    /// The other scale, for the reading beside it.
+    QString otherTemperature(double celsius) const;
+    /// "15 K" or "27 °F"; one decimal only when the size is under 1.
+    QString difference(double kelvins) const;
+    /// The same with a sign in front, "+15 K".
+    QString signedDifference(double kelvins) const;
+};
+
+/// A number with `decimals`, a true minus sign and no locale.
+QString number(double value, int decimals = 0);
+/// A share, "0.31 %": the digits grow as it gets smaller, never more than two.
+QString percent(double fraction);
+/// What is shown for a limit: floors rounded up, ceilings down, in the unit that is shown.
+QString limitTemperature(const Limit& limit, const Units& units);
+
+}  // namespace soak::desk
