@@ -77,6 +77,7 @@ public:
 
 private:
     Store(QString path, QString connection) : path_(std::move(path)), connection_(std::move(connection)) {}
+    void close();
     QString path_, connection_;
 };
 
