@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "base/units.h"
 #include "planner/core/units_text.h"
 
 namespace soak {
@@ -64,10 +65,12 @@ void addUp(Band& band) {
 Result<Done> checkRange(const Furnace& furnace, double setpoint_C) {
     if (setpoint_C >= furnace.minimum_C && setpoint_C <= furnace.maximum_C) return Done{};
     const double if_fahrenheit_C = celsiusFromFahrenheit(setpoint_C);
-    QString message = QString("%1 is outside the range of furnace %2, %3 to %4")
-                          .arg(celsius(setpoint_C), furnace.id, celsius(furnace.minimum_C), celsius(furnace.maximum_C));
+    QString message =
+        QString("%1 is outside the range of furnace %2, %3 to %4")
+            .arg(celsiusText(setpoint_C), furnace.id, celsiusText(furnace.minimum_C), celsiusText(furnace.maximum_C));
     if (if_fahrenheit_C >= furnace.minimum_C && if_fahrenheit_C <= furnace.maximum_C)
-        message += QString("; did you mean %1? That is %2").arg(withUnit(setpoint_C, "°F"), celsius(if_fahrenheit_C));
+        message +=
+            QString("; did you mean %1? That is %2").arg(withUnit(setpoint_C, "°F"), celsiusText(if_fahrenheit_C));
     return refuse(Fault::range, message);
 }
 
@@ -88,7 +91,7 @@ Result<double> thermocoupleTolerance_K(const QString& type, int tolerance_class,
             return refuse(Fault::data, QString("thermocouple type %1 class %2 has no tolerance above %3 in IEC 60584-1")
                                            .arg(type)
                                            .arg(tolerance_class)
-                                           .arg(celsius(row.valid_to_C)));
+                                           .arg(celsiusText(row.valid_to_C)));
         return std::max(row.fixed_K, row.base_K + row.slope * (reading_C - row.from_C));
     }
     return refuse(Fault::data,
@@ -152,7 +155,7 @@ double stepDown_C(const Furnace& furnace, double temperature_C) {
 }
 double step_K(const Furnace& furnace) {
     const double step = furnace.step > 0 ? furnace.step : 1;
-    return furnace.controller_fahrenheit ? step / 1.8 : step;
+    return furnace.controller_fahrenheit ? step / fahrenheitDifference(1) : step;
 }
 
 }  // namespace soak

@@ -1,5 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
+#include "planner/core/grade_rule.h"
 #include "planner/core/window.h"
 
 namespace soak {
@@ -14,14 +15,5 @@ GradeCheck checkGrade(const Heat& heat, const std::vector<Grade>& library);
 std::vector<const Grade*> rowsOfGrade(const QString& name, const std::vector<Grade>& library);
 /// The row that decides for this heat, or nullptr when the library does not know the grade.
 const Grade* mainRow(const Heat& heat, const std::vector<Grade>& library);
-
-/// A rule such as "PRE = Cr + 3.3*Mo + 16*N >= 40", "Ti >= 5*C" or "Ti/N >= 3.4" put to an analysis.
-struct RuleOutcome {
-    enum class Answer { holds, broken, cannot_say, unreadable } answer = Answer::unreadable;
-    double left = 0, right = 0;  ///< both sides with measured values; censored values on the side unsafe for the rule
-    QStringList missing;         ///< elements that the rule needs and the analysis lacks
-    QString text;                ///< "PRE = Cr + 3.3*Mo + 16*N >= 40: 37.5"
-};
-RuleOutcome applyRule(const QString& rule, const Analysis& analysis);
 
 }  // namespace soak

@@ -25,9 +25,10 @@ struct LimitContext {
     AlloyReport* report = nullptr;  ///< nullptr when no physics could be computed; then `report_missing` says why
     QString report_missing;
     const Analysis* analysis = nullptr;
-    QString family;
     const FamilyBook* book = nullptr;
-    Furnace furnace;
+    QString family;
+    QStringList missing;     ///< elements that computed limits need and the analysis lacks
+    Furnace furnace;         ///< no id: no furnace named
     double reference_C = 0;  ///< the standing setpoint: a fraction may be met in more than one range
 };
 
@@ -35,9 +36,7 @@ struct LimitContext {
 /// so in the limit.
 std::vector<Limit> evaluate(const CycleLimit& limit, const LimitContext& context);
 
-/// Labels that a group word stands for; a word that is no group stands for itself.
+/// Labels that a group word stands for ("carbide", "ferrite"); a word that is no group stands for itself.
 QStringList labelsOf(const QString& phase);
-/// "sigma dissolved + 20 K", "specification minimum 1040 °C"
-QString causeText(const CycleLimit& limit, Side side);
 
 }  // namespace soak

@@ -4,6 +4,8 @@
 #include <QStringList>
 #include <cmath>
 
+#include "base/units.h"
+
 namespace soak {
 
 QString number(double value, int decimals) {
@@ -16,19 +18,18 @@ QString withUnit(double value, const QString& unit, int decimals) {
     return number(value, decimals) + QChar(0x2009) + unit;
 }
 
-QString celsius(double temperature_C, int decimals) { return withUnit(temperature_C, QStringLiteral("°C"), decimals); }
-
-double fahrenheit(double temperature_C) { return temperature_C * 1.8 + 32; }
-double celsiusFromFahrenheit(double temperature_F) { return (temperature_F - 32) / 1.8; }
+QString celsiusText(double temperature_C, int decimals) {
+    return withUnit(temperature_C, QStringLiteral("°C"), decimals);
+}
 
 QString temperatureText(double temperature_C, bool fahrenheit_first) {
-    const QString in_C = celsius(temperature_C);
+    const QString in_C = celsiusText(temperature_C);
     const QString in_F = withUnit(fahrenheit(temperature_C), QStringLiteral("°F"));
     return fahrenheit_first ? in_F + " (" + in_C + ")" : in_C + " (" + in_F + ")";
 }
 
 QString differenceText(double difference_K, bool fahrenheit_first) {
-    return fahrenheit_first ? withUnit(difference_K * 1.8, QStringLiteral("°F"))
+    return fahrenheit_first ? withUnit(fahrenheitDifference(difference_K), QStringLiteral("°F"))
                             : withUnit(difference_K, QStringLiteral("K"));
 }
 

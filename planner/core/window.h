@@ -26,9 +26,9 @@ struct Limit {
     QString cause;    ///< in plain words: "sigma dissolved + 20 K", "specification minimum 1040 °C"
     QString because;  ///< why the shop wants it: "sigma left in the metal costs toughness"
     QString source;   ///< "computed", "shop rule", a standard's name
-    std::optional<double>
-        temperature_C;     ///< floors rounded up, ceilings down only when shown; nothing = not binding or not computed
-    bool computed = true;  ///< false: not computed, `remark` says why, and the verdict is "not computed"
+    /// Rounded only when shown, floors up, ceilings down; nothing: does not bind, or not computed.
+    std::optional<double> temperature_C;
+    bool computed = true;     ///< false: not computed, `remark` says why, and the verdict is "not computed"
     bool impossible = false;  ///< no temperature satisfies it ("no temperature removes it"); the verdict is "no window"
     QString remark;
     double margin_K = 0;                                      ///< already contained in temperature_C
@@ -38,10 +38,11 @@ struct Limit {
     std::map<std::string, double> K_per_wt;  ///< sensitivities, exact; empty when set
 };
 
+/// A contribution to the band, signed: low <= 0 <= high for tolerances.
 struct BandPart {
     QString name;
     double low_K = 0, high_K = 0;
-};  ///< signed, low <= 0 <= high for tolerances
+};
 
 /// What the metal can really see at a setpoint.
 struct Band {
@@ -81,7 +82,7 @@ struct WindowAnswer {
     std::optional<double> margin_K;  ///< smaller of the two, negative = outside
     QString reason;                  ///< one or two plain sentences with the two binding causes
     GradeCheck grade_check;
-    QStringList left_out;       ///< elements kept and grade-checked, not in the equilibrium: "P 0.024"
+    QStringList left_out;   ///< elements kept and grade-checked, not in the equilibrium: "P 0.024"
     QStringList remarks;    ///< little evidence, what-if, extrapolation
     QStringList published;  ///< published ranges of the grade, as information
     QString data_set, data_version, program_version;
