@@ -25,9 +25,10 @@ Result<Shelf> makeShelf(std::vector<Grade> grades, std::vector<PublishedTreatmen
 struct Job {
     Heat heat;
     Cycle cycle;
-    Furnace furnace;
+    Furnace furnace;                   ///< without an id: no furnace named, the band is the setpoint itself
     std::optional<double> setpoint_C;  ///< the cycle's own when empty
     QString family;                    ///< the grade's own when empty
+    bool keep_sweep = true;            ///< whether the answer carries the sweep (the rail needs it, a triage does not)
 };
 
 /// Sweeps kept by chemistry and phases, one per worker thread. The last few are enough: heats come one after another.

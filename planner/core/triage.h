@@ -2,16 +2,10 @@
 #pragma once
 #include <atomic>
 
+#include "db/certificate.h"
 #include "planner/core/planner.h"
 
 namespace soak {
-
-/// One heat of a delivery, or a row of its file that was refused and must still be answered.
-struct TriageItem {
-    Heat heat;
-    QString refused;       ///< why the row cannot be judged, with line and column; or empty
-    QStringList findings;  ///< what the reader had to say about the row
-};
 
 /// One row of the answer: one heat, one cycle, the best (or the named) furnace.
 struct TriageRow {
@@ -27,7 +21,7 @@ struct TriageRow {
 };
 
 struct TriageQuestion {
-    std::vector<TriageItem> delivery;
+    std::vector<DeliveryItem> delivery;  ///< heats and held rows, as the certificate reader gives them
     std::vector<Cycle> cycles;
     std::vector<Furnace> furnaces;
     QString furnace;  ///< only this one, or empty

@@ -30,8 +30,9 @@ struct Limit {
     std::optional<double> temperature_C;
     bool computed = true;     ///< false: not computed, `remark` says why, and the verdict is "not computed"
     bool impossible = false;  ///< no temperature satisfies it ("no temperature removes it"); the verdict is "no window"
-    QString remark;
-    double margin_K = 0;                                      ///< already contained in temperature_C
+    QString remark;           ///< why it does not bind, was not computed or has no answer; little evidence
+    QString drivers;      ///< what in this heat moved it to the unsafe side: "Mo 3.95 and Cr 25.9 high, N 0.205 low"
+    double margin_K = 0;  ///< already contained in temperature_C
     double certificate_K = 0, laboratory_K = 0, model_K = 0;  ///< one standard deviation each
     double uncertainty_K = 0;                                 ///< root of the squares of the three
     bool set = false;                        ///< set by people (specification, furnace, code), not computed

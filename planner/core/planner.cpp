@@ -1,0 +1,272 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "planner/core/planner.h"
+
+#include <algorithm>
+#include <cmath>
+
+#include "base/folders.h"
+#include "planner/core/band.h"
+#include "planner/core/grade_check.h"
+#include "planner/core/limits.h"
+#include "planner/core/units_text.h"
+#include "planner/core/verdict.h"
+
+namespace soak {
+namespace {
+
+constexpr std::size_t kMostReports = 16;  // heats come one after another; a sweep is a few megabytes
+
+bool knows(const DataSetFacts& facts, const std::string& element) {
+    return std::find(facts.elements.begin(), facts.elements.end(), element) != facts.elements.end();
+}
+
+const Content* contentOf(const Analysis& analysis, const std::string& element) {
+    const auto at = analysis.find(element);
+    return at == analysis.end() ? nullptr : &at->second;
+}
+
+/// What goes into the equilibrium. "Less than" values enter at their bound; each limit then looks at the unsafe end.
+Chemistry chemistryOf(const Analysis& analysis, const DataSetFacts& facts) {
+    Chemistry chemistry;
+    chemistry.balance = facts.balance;
+    for (const auto& [element, content] : analysis)
+        if (content.wt && element != facts.balance && knows(facts, element)) chemistry.wt[element] = *content.wt;
+    return chemistry;
+}
+
+/// Kept and grade-checked, but not in the equilibrium; values that stand for "not detected" are said too.
+void sayWhatIsLeftOut(WindowAnswer& answer, const Analysis& analysis, const DataSetFacts& facts) {
+    for (const auto& [element, content] : analysis) {
+        const QString symbol = QString::fromStdString(element);
+        if (content.wt && !knows(facts, element))
+            answer.left_out << symbol + " " + (content.raw.isEmpty() ? QString::number(*content.wt) : content.raw);
+        if (!content.wt && !content.raw.trimmed().isEmpty() && knows(facts, element))
+            answer.remarks << QString("%1 \"%2\" is no number: computed without %1").arg(symbol, content.raw);
+        if (content.wt && content.less_than && knows(facts, element))
+            answer.remarks << QString("%1 %2: each limit takes the end that is unsafe for it").arg(symbol, content.raw);
+    }
+}
+
+/// Elements without which no computed limit is trusted: the family's, and those that the grade requires.
+QStringList missingElements(const Analysis& analysis, const Family& family, const Grade* row,
+                            const DataSetFacts& facts) {
+    QStringList needed = family.needs;
+    if (row) {
+        for (const auto& [element, limit] : row->limits)
+            if (limit.min_wt && *limit.min_wt > 0) needed << QString::fromStdString(element);
+        for (const QString& rule : row->rules)
+            if (rule.contains(">=")) needed << applyRule(rule, analysis).elements;
+    }
+    QStringList missing;
+    for (const QString& element : needed) {
+        const std::string symbol = element.toStdString();
+        const Content* content = contentOf(analysis, symbol);
+        const bool there = content && content->wt;
+        if (!there && symbol != facts.balance && knows(facts, symbol) && !missing.contains(element)) missing << element;
+    }
+    return missing;
+}
+
+/// Which elements of this heat moved a limit to the unsafe side, against the middle of the grade's ranges.
+QString driversOf(const Limit& limit, const Analysis& analysis, const Grade& row) {
+    struct Push {
+        double K;
+        QString text;
+        bool high;
+    };
+    std::vector<Push> pushes;
+    for (const auto& [element, slope] : limit.K_per_wt) {
+        const Content* content = contentOf(analysis, element);
+        const auto range = row.limits.find(element);
+        if (!content || !content->wt || range == row.limits.end() || !range->second.max_wt) continue;
+        const double off_middle = *content->wt - (*range->second.max_wt + range->second.min_wt.value_or(0)) / 2;
+        const double unsafe_K = (limit.side == Side::floor ? 1 : -1) * slope * off_middle;
+        if (unsafe_K >= 2)
+            pushes.push_back({unsafe_K, QString::fromStdString(element) + " " + content->raw, off_middle > 0});
+    }
+    std::sort(pushes.begin(), pushes.end(), [](const Push& a, const Push& b) { return a.K > b.K; });
+    QStringList high, low;
+    for (const Push& push : pushes) (push.high ? high : low) << push.text;
+    QStringList parts;
+    if (!high.isEmpty()) parts << listed(high) + " high for the grade";
+    if (!low.isEmpty()) parts << listed(low) + " low for the grade";
+    return parts.join(", ");
+}
+
+bool speaksOf(const PublishedTreatment& treatment, const Grade& row) {
+    const QString& key = treatment.grade_key;
+    if (row.id == key || row.id.startsWith(key + "-")) return true;
+    const QString name = key.section('-', 1);
+    return row.names.contains(name, Qt::CaseInsensitive);
+}
+
+QStringList publishedRanges(const Shelf& shelf, const Grade& row, const QString& kind) {
+    QStringList lines;
+    for (const PublishedTreatment& one : shelf.published) {
+        if (one.kind != kind || !speaksOf(one, row)) continue;
+        const QString range = one.low_C && one.high_C ? celsiusText(*one.low_C) + " to " + celsiusText(*one.high_C)
+                              : one.low_C             ? "at least " + celsiusText(*one.low_C)
+                              : one.high_C            ? "at most " + celsiusText(*one.high_C)
+                                                      : QString("no temperature");
+        lines << range + ", " + one.source + (one.seen == "memory" ? " (from memory)" : "");
+    }
+    return lines;
+}
+
+bool isComputedKind(const QString& kind) { return kind != "specification" && kind != "furnace"; }
+
+/// Every limit of the cycle, and the furnace's own range where the cycle does not speak of it.
+std::vector<CycleLimit> limitsOf(const Job& job) {
+    std::vector<CycleLimit> limits = job.cycle.limits;
+    const bool has_furnace =
+        std::any_of(limits.begin(), limits.end(), [](const CycleLimit& one) { return one.kind == "furnace"; });
+    if (!has_furnace && !job.furnace.id.isEmpty()) {
+        CycleLimit furnace;
+        furnace.kind = "furnace";
+        furnace.because = "the furnace is not built or surveyed for more";
+        furnace.source = "furnace record";
+        limits.push_back(furnace);
+    }
+    return limits;
+}
+
+WindowAnswer begin(const Job& job, const Grade* row) {
+    WindowAnswer answer;
+    answer.heat = job.heat.number;
+    answer.grade = job.heat.grade;
+    answer.family = !job.family.isEmpty() ? job.family : row ? row->family : QString();
+    answer.cycle = job.cycle.name;
+    answer.kind = job.cycle.kind;
+    answer.furnace = job.furnace.id;
+    answer.setpoint_C = job.setpoint_C.value_or(job.cycle.setpoint_C);
+    answer.program_version = SOAKWRIGHT_VERSION;
+    return answer;
+}
+
+WindowAnswer notComputed(WindowAnswer answer, const QString& why) {
+    answer.verdict = Verdict::notComputed;
+    answer.reason = "Not computed: " + why + ".";
+    return answer;
+}
+
+/// Sweep and limits; what fails on the way is said in the limits themselves.
+void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, const Family& family, const Grade* row,
+                   ReportCache& cache) {
+    const auto& data = shelf.data_sets.at(family.data_set);
+    const DataSetFacts& known = facts(*data);
+    sayWhatIsLeftOut(answer, job.heat.analysis, known);
+    const auto limits = limitsOf(job);
+
+    LimitContext context;
+    context.analysis = &job.heat.analysis;
+    context.book = &shelf.book;
+    context.family = family.name;
+    context.missing = missingElements(job.heat.analysis, family, row, known);
+    context.furnace = job.furnace;
+    context.reference_C = job.cycle.setpoint_C;
+    const bool needs_physics =
+        std::any_of(limits.begin(), limits.end(), [](const CycleLimit& one) { return isComputedKind(one.kind); });
+    if (needs_physics && context.missing.isEmpty()) {
+        const auto [from_C, to_C] = shelf.book.sweep_C.at(family.data_set);
+        auto report = cache.of(data, chemistryOf(job.heat.analysis, known), family.phases, from_C, to_C);
+        if (report)
+            context.report = report.value();
+        else
+            context.report_missing = QString::fromStdString(report.error().text());
+    }
+    for (const CycleLimit& limit : limits)
+        for (Limit& made : evaluate(limit, context)) {
+            if (row && made.temperature_C && !made.set) made.drivers = driversOf(made, job.heat.analysis, *row);
+            (made.side == Side::floor ? answer.floors : answer.ceilings).push_back(std::move(made));
+        }
+    if (context.report && job.keep_sweep) answer.sweep = context.report->sweep();
+}
+
+void sayEvidence(WindowAnswer& answer) {
+    for (const auto* side : {&answer.floors, &answer.ceilings})
+        for (const Limit& limit : *side)
+            if (limit.temperature_C && !limit.remark.isEmpty()) answer.remarks << limit.cause + ": " + limit.remark;
+}
+
+}  // namespace
+
+bool isJudged(const QString& cycle_kind) {
+    static const QStringList kinds{"solution-anneal", "harden", "full-anneal", "normalise"};
+    return kinds.contains(cycle_kind);
+}
+
+Result<Shelf> makeShelf(std::vector<Grade> grades, std::vector<PublishedTreatment> published, ShopRules rules) {
+    auto book = loadFamilyBook();
+    if (!book) return std::move(book).error();
+    Shelf shelf{{}, std::move(grades), std::move(published), std::move(book).value(), std::move(rules)};
+    for (const Family& family : shelf.book.families) {
+        if (shelf.data_sets.count(family.data_set)) continue;
+        if (!shelf.book.sweep_C.count(family.data_set))
+            return Error{
+                Fault::data,
+                "planner/core/data/sweep.toml has no row for the data set \"" + family.data_set.toStdString() + "\"",
+                {},
+                {}};
+        auto data = loadDataSet(productPath("thermo/data") / family.data_set.toStdString());
+        if (!data) return std::move(data).error();
+        shelf.data_sets[family.data_set] = std::move(data).value();
+    }
+    return shelf;
+}
+
+Result<AlloyReport*> ReportCache::of(const std::shared_ptr<const DataSet>& data, const Chemistry& chemistry,
+                                     const PhaseChoice& choice, double from_C, double to_C) {
+    std::string key = facts(*data).version + " " + std::to_string(from_C) + " " + std::to_string(to_C);
+    for (const auto& [element, wt] : chemistry.wt)
+        key += " " + element + "=" + QString::number(wt, 'g', 17).toStdString();
+    for (const auto& phase : choice.with) key += " +" + phase;
+    for (const auto& phase : choice.without) key += " -" + phase;
+    if (const auto known = reports_.find(key); known != reports_.end()) return known->second.get();
+    auto made = AlloyReport::make(data, chemistry, choice, from_C, to_C);
+    if (!made) return std::move(made).error();
+    if (reports_.size() >= kMostReports) reports_.clear();
+    auto& kept = reports_[key] = std::make_unique<AlloyReport>(std::move(made).value());
+    return kept.get();
+}
+
+Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cache) {
+    const Grade* row = mainRow(job.heat, shelf.grades);
+    WindowAnswer answer = begin(job, row);
+    answer.grade_check = checkGrade(job.heat, shelf.grades);
+    if (row) answer.published = publishedRanges(shelf, *row, job.cycle.kind);
+    if (!isJudged(job.cycle.kind)) return notComputed(answer, "this kind is not judged yet (" + job.cycle.kind + ")");
+    if (answer.family.isEmpty())
+        return notComputed(answer, "grade \"" + job.heat.grade + "\" is not in the library; name a family");
+    const Family* family = shelf.book.find(answer.family);
+    if (!family) return notComputed(answer, "the family \"" + answer.family + "\" is not judged yet");
+    const DataSetFacts& known = facts(*shelf.data_sets.at(family->data_set));
+    answer.data_set = QString::fromStdString(known.name);
+    answer.data_version = QString::fromStdString(known.version);
+    if (!family->phase_rule.isEmpty()) answer.remarks << family->phase_rule;
+
+    auto band = bandOrSetpoint(job.furnace, answer.setpoint_C, shelf.rules);
+    if (!band) return std::move(band).error();
+    answer.band = std::move(band).value();
+
+    computeLimits(answer, job, shelf, *family, row, cache);
+    decide(answer, job.furnace, shelf.rules);
+    const bool has_window = answer.verdict != Verdict::notComputed && answer.verdict != Verdict::noWindow;
+    if (has_window) {
+        answer.suggested_setpoint_C = suggestSetpoint(answer, job.furnace, shelf.rules, job.cycle.setpoint_C);
+        decide(answer, job.furnace, shelf.rules);  // again: the reason may name the suggestion
+    }
+    sayEvidence(answer);
+    return answer;
+}
+
+Result<WindowAnswer> atSetpoint(WindowAnswer answer, const Furnace& furnace, const ShopRules& rules,
+                                double setpoint_C) {
+    auto band = bandOrSetpoint(furnace, setpoint_C, rules);
+    if (!band) return std::move(band).error();
+    answer.band = std::move(band).value();
+    answer.setpoint_C = setpoint_C;
+    if (!answer.floors.empty() || !answer.ceilings.empty()) decide(answer, furnace, rules);
+    return answer;
+}
+
+}  // namespace soak
