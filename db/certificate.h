@@ -3,26 +3,15 @@
 #include <QByteArray>
 #include <QString>
 #include <QStringList>
-#include <optional>
 #include <vector>
 
 #include "base/result.h"
+#include "db/content.h"
 #include "db/records.h"
 
 namespace soak {
 
-/// What a column's numbers are in, before they become wt%.
-enum class AmountUnit { percent, thousandth, ppm };
-
-/// Reads one cell of an analysis. Never guesses: what cannot be read stays empty with a remark; `raw` is kept as found.
-///   "0.048" "0,048" "0.82%" "1740 ppm" "<0.010" "<0,01" "< 1"      a number; the last two kinds are censored
-///   "nnw." "n.n." "n.d." "trace" "Spuren"                          not detected, no bound given: no number
-///   "" "-"                                                         no value; a dash is not a zero
-///   "0.O21"                                                        letter O: refused, the remark offers 0.021
-///   "-0.001"                                                       an instrument's zero: refused
-Content readContent(const QString& raw, AmountUnit unit = AmountUnit::percent);
-
-/// What became of a cell, for the preview: {"heat","row","column","raw","read","text"}.
+/// What the reader has to say about one cell: {"heat","row","column","raw","read","text"} of the preview.
 struct CellFinding {
     QString heat;
     int line = 0;          ///< line of the file, from 1
@@ -32,21 +21,28 @@ struct CellFinding {
     bool refuses = false;  ///< the row is held because of it
 };
 
-/// One analysis row of the file. `held` says why it cannot be used; what could be read is in `heat` all the same.
+/// One analysis row of the file. What could be read of a held row is in `heat` all the same; it must not be used before
+/// a person has decided.
 struct CertificateRow {
     Heat heat;
     int line = 0;
-    QString column;  ///< the column that holds it back, or empty
-    QString held;    ///< "Cr 252.0: the analysis adds up to 284.7 %", or empty
+    QString held;  ///< "line 26, column Cr: the analysis adds up to 265.6 wt% ...", or empty
     std::vector<CellFinding> findings;
     bool usable() const { return held.isEmpty(); }
 };
 
-/// A line that is not an analysis: header, unit row, Min, Max, total, page break, statement.
+/// A line that is no analysis: unit row, limits, total, repeated header, statement.
 struct OtherLine {
     int line = 0;
-    QString what;  ///< "units", "limits", "total", "repeated header", "text"
+    QString what;  ///< "units", "limits", "total", "header", "text"
     QString text;
+};
+
+/// What a triage must answer: a heat with all its rows brought together, or a row that is held.
+struct DeliveryItem {
+    Heat heat;
+    QString held;          ///< why it cannot be judged, with line and column; or empty
+    QStringList findings;  ///< "line 8, column C: \"0,048\" read as 0.048 wt% (decimal comma)"
 };
 
 struct Certificate {
@@ -54,18 +50,24 @@ struct Certificate {
     std::vector<CertificateRow> rows;  ///< every analysis row of the file, in its order
     std::vector<OtherLine> others;     ///< every other line that is not blank
     QStringList columns;               ///< header as found
-    QStringList taken_for;             ///< what each column was taken for: "heat", "grade", "C", "" = kept out
+    QStringList taken_for;             ///< what each column was taken for: "heat", "grade", "C"; "" = kept out
 
-    /// The usable heats, one per number: the ladle row is the heat's analysis, the product row is beside it in
-    /// `other_analyses`; a second product of the same cast is in `other_products`.
+    /// Heats and held rows in the file's order. One item for each usable heat number: the ladle row is the heat's
+    /// analysis and a product row beside it in `other_analyses`; the same chemistry again is a second product of one
+    /// cast, in `other_products`.
+    std::vector<DeliveryItem> delivery() const;
+    /// The usable heats of the delivery: what storeHeats takes.
     std::vector<Heat> heats() const;
-    /// The first row of each heat number and every held row: what a triage must answer.
+    /// All rows' findings, in the file's order.
     std::vector<CellFinding> findings() const;
 };
 
-/// Reads a comma or semicolon file (UTF-8 or Latin-1). Fault::input when no header row with a heat column and elements
-/// is found; a bad row is a held row, never a failed file.
+/// Reads a comma, semicolon or tab separated file. Fault::store when it cannot be read, Fault::input when no header row
+/// with a heat column and elements is found. A bad row is a held row, never a failed file.
 Result<Certificate> readCertificate(const QString& path);
 Result<Certificate> readCertificateText(const QByteArray& bytes, const QString& name);
+
+/// The same, in one line: "line 8, column C: ...".
+QString findingText(const CellFinding& finding);
 
 }  // namespace soak

@@ -6,6 +6,17 @@
 #include "db/store_error.h"
 
 namespace soak {
+namespace {
+
+/// Texts are never NULL in the store: an empty one is an empty one.
+void bind(QSqlQuery& query, const QVariantList& values) {
+    for (qsizetype i = 0; i < values.size(); ++i) {
+        const bool is_null_text = values[i].metaType().id() == QMetaType::QString && values[i].toString().isNull();
+        query.bindValue(int(i), is_null_text ? QVariant(QString("")) : values[i]);
+    }
+}
+
+}  // namespace
 
 Transaction::Transaction(const QSqlDatabase& database, QString path, QString doing)
     : database_(database), path_(std::move(path)), doing_(std::move(doing)) {
@@ -24,7 +35,7 @@ QSqlQuery* Transaction::execute(const QString& sql, const QVariantList& values) 
     QSqlQuery& query = entry->second;
     query.setForwardOnly(true);
     bool done = !is_new || query.prepare(sql);
-    for (qsizetype i = 0; i < values.size(); ++i) query.bindValue(int(i), values[i]);
+    bind(query, values);
     done = done && query.exec();
     if (!done) {
         fail(storeError(query.lastError(), path_, doing_));
@@ -66,7 +77,7 @@ Rows::Rows(const QSqlDatabase& database, QString path, QString doing, const QStr
     : query_(database), path_(std::move(path)), doing_(std::move(doing)) {
     query_.setForwardOnly(true);
     bool done = query_.prepare(sql);
-    for (qsizetype i = 0; i < values.size(); ++i) query_.bindValue(int(i), values[i]);
+    bind(query_, values);
     done = done && query_.exec();
     if (!done) error_ = storeError(query_.lastError(), path_, doing_);
 }

@@ -111,7 +111,7 @@ Result<Sheet> Store::sheet(const QString& number, const QString& revision) const
               "SELECT " + kColumns +
                   " FROM sheet WHERE number = ? AND (? = '' OR revision = ?) "
                   "ORDER BY length(revision) DESC, revision DESC LIMIT 1",
-              {number, revision.isNull() ? QString("") : revision, revision});
+              {number, revision, revision});
     const bool found = rows.next();
     if (rows.error()) return *rows.error();
     if (found) return sheetOf(rows);

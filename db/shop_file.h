@@ -1,0 +1,23 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#pragma once
+#include <QString>
+#include <vector>
+
+#include "base/result.h"
+#include "db/records.h"
+
+namespace soak {
+
+/// A whole shop as one JSON file: rules, quenches, furnaces, cycles with their limits (db/demo/shop.json shows every
+/// field).
+struct ShopFile {
+    Shop shop;
+    std::vector<Quench> quenches;
+    std::vector<Furnace> furnaces;
+    std::vector<Cycle> cycles;
+};
+
+/// Fault::data for what is wrong or missing, with the place: "shop.json: furnace F1: survey".
+Result<ShopFile> readShopFile(const QString& path);
+
+}  // namespace soak
