@@ -1,0 +1,104 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#pragma once
+#include <Eigen/Dense>
+#include <array>
+#include <memory>
+#include <vector>
+
+#include "base/result.h"
+#include "hull.h"
+#include "system.h"
+
+namespace soak {
+
+/// One composition set of one phase.
+struct PhaseSet {
+    int phase = 0;                                  ///< index into System::phases
+    double n = 0;                                   ///< mole of formula units per mole of atoms of the alloy
+    double atoms = 0;                               ///< mole of atoms per formula unit
+    double gibbs = 0;                               ///< J per mole of formula unit
+    std::array<double, PhaseModel::kMost> y{};      ///< site fractions
+};
+
+/// A local minimum of one phase's distance to the tangent plane.
+struct Minimum {
+    PhaseSet set;        ///< n unused
+    double height = 0;   ///< G - mu a, J per mole of formula unit; negative = the phase wants to form
+};
+
+/// One solved state. `minima` and `lowest` speed up the next state near it; they carry no part of the answer.
+struct Point {
+    double T = 0;
+    std::vector<PhaseSet> sets;
+    Eigen::VectorXd mu;            ///< J per mole of atoms, in the system's order of elements
+    double gibbs = 0;              ///< J per mole of atoms
+    double proof = 0;              ///< largest driving force left, J per mole of atoms
+    std::vector<Minimum> minima;   ///< of phases and sets that are not stable
+    std::vector<double> lowest;    ///< per phase: lower bound of its height, J per mole of formula unit
+    Eigen::VectorXd sampleHeight;  ///< heights of the samples at this state
+};
+
+/// What takes the place of a given temperature: sum over sets of n (q . a) = 0, q one weight per element and set.
+struct Condition {
+    std::vector<Eigen::VectorXd> weight;  ///< per set; empty vectors count as zero
+};
+
+/// Finds the global minimum of G at T, 1 atm and overall composition. One per thread.
+///   1. Start: warm from the last point, or cold: lower hull over samples of every phase by linear programming.
+///   2. Refine: Newton on chemical potentials, amounts and site fractions together.
+///      M. Hillert, Physica 103B (1981) 31-40; B. Sundman, X.-G. Lu, H. Ohtani, Comput. Mater. Sci. 101 (2015) 127-137.
+///   3. Prove: minimise every phase's distance to the tangent plane from several starts; what lies below enters, and 2 runs again.
+///   4. When 2 fails, new columns from 3 refine the hull until its plane is near enough for Newton.
+class Solver {
+public:
+    /// `b`: mole fractions in the system's order, all positive. `allowed`: per phase of the system.
+    Solver(std::shared_ptr<const System> system, Eigen::VectorXd b, std::vector<char> allowed);
+
+    /// Solves at T (K). Starts from the last point when it lies within 60 K, else cold; falls back to cold.
+    Result<Done> solve(double T);
+    /// The same from nothing, ignoring the last point.
+    Result<Done> solveCold(double T);
+    const Point& point() const { return point_; }
+    /// Makes `point` the start of the next solve.
+    void startFrom(const Point& point) { point_ = point; }
+    /// Another composition over the same elements and phases; the last point stays the start.
+    void setComposition(const Eigen::VectorXd& b) { b_ = b; }
+    const Eigen::VectorXd& composition() const { return b_; }
+    const System& system() const { return *system_; }
+
+    /// Solves for the temperature at which `condition` holds with exactly the sets of `start` (some may have n = 0).
+    /// Not proven; see prove(). `dT_db` receives dT per mole of each element added to the alloy.
+    bool solveCondition(Point& start, const Condition& condition, Eigen::VectorXd& dT_db);
+    /// Proves a point at its temperature; returns the largest driving force (J per mole of atoms).
+    double prove(Point& point, bool thorough);
+
+    struct Counters { long states = 0, cold = 0, newton = 0, descents = 0, descentSteps = 0, hulls = 0, fallbacks = 0; };
+    Counters counters;
+
+private:
+    struct Local;
+    void localize(const PhaseModel& model, const double* y, double T, Local& local, bool withSlope) const;
+    bool refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db);
+    void descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std::vector<Minimum>& known, const std::vector<PhaseSet>& sets);
+    bool converge(Point& p, bool thorough);
+    bool exchange(Point& p, const std::vector<Minimum>& entering);
+    Point coldStart(double T);
+    bool columnStart(Point& p);
+    std::vector<PhaseSet> setsOf(const Hull& hull, const std::vector<PhaseSet>& extra, int sampleCount) const;
+    void mergeSets(std::vector<PhaseSet>& sets, double T) const;
+    void addOverall(std::vector<PhaseSet>& into, double T) const;
+    bool solveHull(Hull& hull, const std::vector<PhaseSet>& extra, bool withSamples);
+    void complete(PhaseSet& set, double T) const;
+    std::vector<Minimum> violators(const Point& p) const;
+
+    std::shared_ptr<const System> system_;
+    Eigen::VectorXd b_;
+    std::vector<char> allowed_;
+    Point point_;
+    Eigen::VectorXd at_, slope_, sampleG_, height_;
+    double atT_ = 0, sampleT_ = 0;
+    void setTemperature(double T);
+    const Eigen::VectorXd& samplesAt(double T);
+};
+
+}  // namespace soak
