@@ -26,12 +26,12 @@ struct PhaseChoice {
 
 /// One phase (or one composition set of it) in a state.
 struct PhaseAmount {
-    std::string name;                  ///< data key: "austenite", "hexagonal"
-    std::string label;                 ///< the trade's name by composition: "MX", "Cr2N", "delta ferrite"
-    double mole_fraction = 0;          ///< of atoms, 0..1
-    double mass_fraction = 0;          ///< 0..1
-    double volume_fraction = 0;        ///< 0..1, from densities or lattice parameters at room temperature
-    std::map<std::string, double> wt;  ///< composition of the phase, wt%
+    std::string name;                             ///< data key: "austenite", "hexagonal"
+    std::string label;                            ///< the trade's name by composition: "MX", "Cr2N", "delta ferrite"
+    double mole_fraction = 0;                     ///< of atoms, 0..1
+    double mass_fraction = 0;                     ///< 0..1
+    double volume_fraction = 0;                   ///< 0..1, from densities or lattice parameters at room temperature
+    std::map<std::string, double> wt;             ///< composition of the phase, wt%
     std::map<std::string, double> site_fraction;  ///< "1:Fe" -> y; sublattices count from 1
 };
 
@@ -41,7 +41,8 @@ struct State {
     std::vector<PhaseAmount> phases;  ///< largest amount first
     std::map<std::string, double> chemical_potential_J_per_mol;
     double gibbs_J_per_mol = 0;  ///< per mole of atoms
-    double proof_J_per_mol = 0;  ///< largest driving force of any phase above the found tangent plane, per mole of atoms
+    double proof_J_per_mol =
+        0;  ///< largest driving force of any phase above the found tangent plane, per mole of atoms
 
     /// Sum over all sets that carry this label, 0 when absent.
     double moleFraction(std::string_view label) const;
@@ -89,13 +90,13 @@ Result<std::shared_ptr<const DataSet>> loadDataSet(const std::filesystem::path& 
 
 /// Facts about a set, for screens, results and sheets.
 struct DataSetFacts {
-    std::string name;                         ///< folder name: "ferrous"
-    std::string version;                      ///< content hash of the files, 12 hex digits
-    std::string balance;                      ///< element that takes the rest when none is written
-    std::vector<std::string> elements;        ///< in the set's order
-    std::vector<std::string> phases;          ///< data keys
-    std::vector<std::string> left_out;        ///< phases that take part only when asked for (gas, graphite)
-    std::vector<std::string> gaps;            ///< end-members by default, binaries without a file, in words
+    std::string name;                   ///< folder name: "ferrous"
+    std::string version;                ///< content hash of the files, 12 hex digits
+    std::string balance;                ///< element that takes the rest when none is written
+    std::vector<std::string> elements;  ///< in the set's order
+    std::vector<std::string> phases;    ///< data keys
+    std::vector<std::string> left_out;  ///< phases that take part only when asked for (gas, graphite)
+    std::vector<std::string> gaps;      ///< end-members by default, binaries without a file, in words
     int parameters = 0, estimated = 0;
 };
 const DataSetFacts& facts(const DataSet& data);
@@ -127,8 +128,9 @@ public:
     /// The same for the content (wt%) of `element` in the matrix.
     Result<Event> temperatureOfMatrixContent(std::string_view element, double content_wt, double from_K, double to_K);
 
+    struct Inside;  ///< workspace, defined beside the implementation
+
 private:
-    struct Inside;
     std::unique_ptr<Inside> inside_;
     explicit Alloy(std::unique_ptr<Inside> inside);
 };

@@ -1,12 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "data_set.h"
 
+#include <toml++/toml.h>
 #include <algorithm>
 #include <cstdint>
 #include <fstream>
 #include <set>
 #include <sstream>
-#include <toml++/toml.h>
 
 #include "system.h"
 
@@ -107,12 +107,15 @@ private:
             const auto value = range["value"].value<std::string>();
             if (!from || !value) return wrong(file, name, "a range lacks `from` or `value`");
             if (!ranges.empty() && *from <= ranges.back().from)
-                return wrong(file, name, "the range from " + std::to_string(*from) + " K does not lie above the one before");
+                return wrong(file, name,
+                             "the range from " + std::to_string(*from) + " K does not lie above the one before");
             ranges.push_back({*from, *value});
         }
-        if (ranges.front().from > 298.15) return wrong(file, name, "a gap below " + std::to_string(ranges.front().from) + " K");
+        if (ranges.front().from > 298.15)
+            return wrong(file, name, "a gap below " + std::to_string(ranges.front().from) + " K");
         const auto upto = node["upto"].value<double>();
-        if (!upto || *upto <= ranges.back().from) return wrong(file, name, "`upto` is missing or lies below the last range");
+        if (!upto || *upto <= ranges.back().from)
+            return wrong(file, name, "`upto` is missing or lies below the last range");
         return ranges;
     }
 
@@ -176,7 +179,8 @@ private:
             if (const auto* sites = entry["sites"].as_array())
                 for (const auto& site : *sites) phase.sites.push_back(site.value_or(0.0));
             if (const auto* lists = entry["constituents"].as_array())
-                for (const auto& list : *lists) phase.constituents.push_back(texts(toml::node_view<const toml::node>(list)));
+                for (const auto& list : *lists)
+                    phase.constituents.push_back(texts(toml::node_view<const toml::node>(list)));
             if (phase.sites.empty() || phase.sites.size() != phase.constituents.size())
                 return wrong(file, phase.name, "`sites` and `constituents` do not have the same number of sublattices");
             for (const auto& list : phase.constituents) {
@@ -184,7 +188,8 @@ private:
                 for (const auto& name : list) {
                     if (name != "Va" && data_.elementIndex(name) < 0)
                         return wrong(file, phase.name, "the constituent " + name + " is not an element of this set");
-                    if (!once.insert(name).second) return wrong(file, phase.name, name + " stands twice on one sublattice");
+                    if (!once.insert(name).second)
+                        return wrong(file, phase.name, name + " stands twice on one sublattice");
                 }
             }
             for (double site : phase.sites)
@@ -227,11 +232,13 @@ private:
                 LabelRule rule;
                 rule.phase = entry["phase"].value_or(std::string());
                 rule.label = entry["label"].value_or(std::string());
-                if (data_.phaseIndex(rule.phase) < 0) return wrong(file, "rule " + rule.label, "no phase is named " + rule.phase);
+                if (data_.phaseIndex(rule.phase) < 0)
+                    return wrong(file, "rule " + rule.label, "no phase is named " + rule.phase);
                 rule.filled_above = entry["filled_above"].value<double>();
                 rule.main = entry["main"].value_or(std::string());
                 const auto pair = texts(entry["exceeds"]);
-                if (!pair.empty() && pair.size() != 2) return wrong(file, "rule " + rule.label, "`exceeds` takes two elements");
+                if (!pair.empty() && pair.size() != 2)
+                    return wrong(file, "rule " + rule.label, "`exceeds` takes two elements");
                 if (pair.size() == 2) rule.exceeds_this = pair[0], rule.exceeds_other = pair[1];
                 for (const auto& element : {rule.main, rule.exceeds_this, rule.exceeds_other})
                     if (!element.empty() && data_.elementIndex(element) < 0)
@@ -294,15 +301,17 @@ private:
         if (p.phase < 0) return wrong(file, called, "no phase is named \"" + phaseName + "\"");
         const PhaseData& phase = data_.phases[static_cast<size_t>(p.phase)];
         if (at.size() != phase.sites.size())
-            return wrong(file, called, "it names " + std::to_string(at.size()) + " sublattices, the phase has " +
-                                           std::to_string(phase.sites.size()));
+            return wrong(file, called,
+                         "it names " + std::to_string(at.size()) + " sublattices, the phase has " +
+                             std::to_string(phase.sites.size()));
         for (size_t s = 0; s < at.size(); ++s) {
             std::vector<int> mixing;
             for (const auto& name : splitCommas(at[s])) {
                 const auto& list = phase.constituents[s];
                 const auto found = std::find(list.begin(), list.end(), name);
                 if (found == list.end())
-                    return wrong(file, called, "\"" + name + "\" is no constituent of sublattice " + std::to_string(s + 1));
+                    return wrong(file, called,
+                                 "\"" + name + "\" is no constituent of sublattice " + std::to_string(s + 1));
                 if (name != "Va" && !members.count(name))
                     return wrong(file, called, name + " does not belong to the system of this file");
                 mixing.push_back(static_cast<int>(found - list.begin()));
@@ -325,20 +334,23 @@ private:
         p.value = std::move(function).value();
         if (p.kind != ParameterKind::G)
             for (size_t k = 1; k < kPowers; ++k)
-                if (p.value.pieces.front().coefficients[k] != 0) return wrong(file, called, kind + " must not depend on T");
+                if (p.value.pieces.front().coefficients[k] != 0)
+                    return wrong(file, called, kind + " must not depend on T");
         const std::string source = entry["source"].value_or(std::string());
         p.source = sources[source].value_or(std::string());
         if (p.source.empty()) return wrong(file, called, "the source \"" + source + "\" is not listed in [sources]");
         p.estimated = entry["estimated"].value_or(false);
         p.fitted_to = entry["fitted_to"].value_or(std::string());
         if (!once_.insert({p.phase, static_cast<int>(p.kind), p.at, p.order}).second)
-            return wrong(file, called, "the same parameter (order " + std::to_string(p.order) + ") stands twice in the set");
+            return wrong(file, called,
+                         "the same parameter (order " + std::to_string(p.order) + ") stands twice in the set");
         data_.facts.estimated += p.estimated;
         data_.parameters.push_back(std::move(p));
         return Done{};
     }
 
-    /// Which forms the models know: end-members, one sublattice mixing (2: any order, 3: orders -1..2), two mixing by pairs.
+    /// Which forms the models know: end-members, one sublattice mixing (2: any order, 3: orders -1..2), two mixing by
+    /// pairs.
     static std::string shapeFault(const Parameter& p) {
         size_t pairs = 0, triples = 0, more = 0;
         for (const auto& mixing : p.at) {
@@ -347,7 +359,8 @@ private:
             more += mixing.size() > 3;
         }
         if (more || triples > 1 || (triples && pairs) || pairs > 2) return "this way of mixing is not modelled";
-        if (triples ? (p.order < -1 || p.order > 2) : p.order < 0 || p.order > 9) return "unknown order " + std::to_string(p.order);
+        if (triples ? (p.order < -1 || p.order > 2) : p.order < 0 || p.order > 9)
+            return "unknown order " + std::to_string(p.order);
         if ((pairs == 2 || pairs + triples == 0) && p.order != 0) return "only order 0 is known here";
         return {};
     }
@@ -372,8 +385,10 @@ private:
                     data_.facts.gaps.push_back("end-member by default: " + phase.name + " " + text);
                 more = false;
                 for (size_t s = 0; s < index.size() && !more; ++s) {
-                    if (++index[s] < phase.constituents[s].size()) more = true;
-                    else index[s] = 0;
+                    if (++index[s] < phase.constituents[s].size())
+                        more = true;
+                    else
+                        index[s] = 0;
                 }
             }
         }
@@ -417,7 +432,10 @@ std::shared_ptr<const System> DataSet::system(const std::vector<int>& wanted) co
 Result<std::shared_ptr<const DataSet>> loadDataSet(const fs::path& folder) {
     std::error_code ignored;
     if (!fs::is_directory(folder / "systems", ignored))
-        return Error{Fault::data, "no data set lies in " + folder.string() + " (a folder with elements.toml, phases.toml, systems/)", "", {}};
+        return Error{Fault::data,
+                     "no data set lies in " + folder.string() + " (a folder with elements.toml, phases.toml, systems/)",
+                     "",
+                     {}};
     auto data = std::make_shared<DataSet>();
     auto done = Loader(folder, *data).load();
     if (!done) return std::move(done).error();

@@ -17,8 +17,8 @@ class System;
 
 struct ElementData {
     std::string symbol;
-    double mass = 0;        ///< g/mol
-    Function reference;     ///< stands for the element in end-members by default, J/mol of atoms
+    double mass = 0;     ///< g/mol
+    Function reference;  ///< stands for the element in end-members by default, J/mol of atoms
 };
 
 struct MagneticData {
@@ -29,20 +29,20 @@ struct MagneticData {
 /// When a composition set of a phase carries another trade name than the phase. All stated conditions must hold.
 struct LabelRule {
     std::string phase, label;
-    std::optional<double> filled_above;            ///< share of the last sublattice's sites that is not vacant
-    std::string main;                              ///< the metal with the largest content
-    std::string exceeds_this, exceeds_other;       ///< mole fraction of the first exceeds that of the second
-    bool from_matrix_on_heating = false;           ///< the set forms from the other matrix phase on heating (delta ferrite)
+    std::optional<double> filled_above;       ///< share of the last sublattice's sites that is not vacant
+    std::string main;                         ///< the metal with the largest content
+    std::string exceeds_this, exceeds_other;  ///< mole fraction of the first exceeds that of the second
+    bool from_matrix_on_heating = false;      ///< the set forms from the other matrix phase on heating (delta ferrite)
 };
 
 struct PhaseData {
     std::string name, structure;
-    std::string label;                             ///< the trade's name when no rule matches
+    std::string label;  ///< the trade's name when no rule matches
     std::vector<double> sites;
     std::vector<std::vector<std::string>> constituents;  ///< "Va" is a vacant site
     std::optional<MagneticData> magnetic;
-    std::map<std::string, double> volume_cm3;      ///< per mole of atoms of the element in this phase
-    bool left_out = false;                         ///< takes part only when asked for
+    std::map<std::string, double> volume_cm3;  ///< per mole of atoms of the element in this phase
+    bool left_out = false;                     ///< takes part only when asked for
 };
 
 enum class ParameterKind { G, Tc, beta };
@@ -50,14 +50,15 @@ enum class ParameterKind { G, Tc, beta };
 struct Parameter {
     int phase = 0;
     ParameterKind kind = ParameterKind::G;
-    std::vector<std::vector<int>> at;              ///< per sublattice: indices into the phase's constituents
+    std::vector<std::vector<int>> at;  ///< per sublattice: indices into the phase's constituents
     int order = 0;
     Function value;
-    std::string source, fitted_to, place;          ///< place: file and entry, for messages
+    std::string source, fitted_to, place;  ///< place: file and entry, for messages
     bool estimated = false;
 };
 
-/// Assessed data as loaded and checked. Immutable but for the cache of compiled systems, which is guarded: threads share it.
+/// Assessed data as loaded and checked. Immutable but for the cache of compiled systems, which is guarded: threads
+/// share it.
 class DataSet {
 public:
     DataSet();
@@ -69,7 +70,7 @@ public:
     std::vector<PhaseData> phases;
     std::vector<Parameter> parameters;
     std::vector<LabelRule> labels;
-    std::vector<std::string> matrix;               ///< labels that count as the metallic matrix
+    std::vector<std::string> matrix;  ///< labels that count as the metallic matrix
     DataSetFacts facts;
 
     int elementIndex(std::string_view symbol) const;  ///< -1 when unknown

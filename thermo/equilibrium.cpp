@@ -12,9 +12,9 @@ namespace {
 
 constexpr int kMost = PhaseModel::kMost;
 constexpr int kMostElements = 24;
-constexpr double kFloor = 1e-20;       // smallest site fraction: below it a constituent weighs nothing in G
-constexpr double kViolation = 2e-7;    // driving force, in RT per mole of atoms, above which a phase enters
-constexpr double kWarmRange = 60;      // K between neighbours that may start from each other
+constexpr double kFloor = 1e-20;     // smallest site fraction: below it a constituent weighs nothing in G
+constexpr double kViolation = 2e-7;  // driving force, in RT per mole of atoms, above which a phase enters
+constexpr double kWarmRange = 60;    // K between neighbours that may start from each other
 
 /// Euclidean distance of the square roots of site fractions: the natural metric of mixing entropy.
 double distance2(const double* y, const double* z, int n) {
@@ -26,14 +26,16 @@ double distance2(const double* y, const double* z, int n) {
     return sum;
 }
 
-/// Moves y by `alpha` times the Newton step dz (in units of sqrt(y)), keeps it positive and each sublattice summing to 1.
-/// Small fractions move in their logarithm, where ideal mixing is linear.
+/// Moves y by `alpha` times the Newton step dz (in units of sqrt(y)), keeps it positive and each sublattice summing
+/// to 1. Small fractions move in their logarithm, where ideal mixing is linear.
 void move(const PhaseModel& model, const double* dz, double alpha, double* y) {
     for (int c = 0; c < model.size; ++c) {
         const double r = alpha * dz[c] / std::sqrt(y[c]);
         double next = y[c] * (1 + r);
-        if (r < -0.1) next = y[c] * std::exp(std::max(r, -60.0));
-        else if (r > 0.1) next = std::max(std::min(next, 2.0), std::min(y[c] * std::exp(std::min(r, 60.0)), 0.02));
+        if (r < -0.1)
+            next = y[c] * std::exp(std::max(r, -60.0));
+        else if (r > 0.1)
+            next = std::max(std::min(next, 2.0), std::min(y[c] * std::exp(std::min(r, 60.0)), 0.02));
         y[c] = std::max(next, kFloor);
     }
     for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s) {
@@ -45,16 +47,16 @@ void move(const PhaseModel& model, const double* dz, double alpha, double* y) {
 
 }  // namespace
 
-/// One phase at one point: G, its gradient, and the inverse of its curvature within the sublattice sums, in factored form.
-/// All in the scaled variable z = dy / sqrt(y), in which the ideal part of the curvature is R T a and the sums' normals are
-/// orthonormal; B = P H P + kappa (1 - P) = L L^T with P the projection on the tangent space.
+/// One phase at one point: G, its gradient, and the inverse of its curvature within the sublattice sums, in factored
+/// form. All in the scaled variable z = dy / sqrt(y), in which the ideal part of the curvature is R T a and the sums'
+/// normals are orthonormal; B = P H P + kappa (1 - P) = L L^T with P the projection on the tangent space.
 struct Solver::Local {
     double G = 0, G_T = 0, atoms = 0;
-    bool shifted = false;              ///< the curvature was not positive and has been lifted
+    bool shifted = false;  ///< the curvature was not positive and has been lifted
     double g[kMost], root[kMost];
-    double L[kMost * kMost];           ///< lower triangle, row-major n x n
-    double W[kMost * kMostElements];   ///< L^-1 P A, row-major n x elements
-    double w0[kMost], wT[kMost];       ///< L^-1 P of the residual gradient (needs mu) and of its slope in T
+    double L[kMost * kMost];          ///< lower triangle, row-major n x n
+    double W[kMost * kMostElements];  ///< L^-1 P A, row-major n x elements
+    double w0[kMost], wT[kMost];      ///< L^-1 P of the residual gradient (needs mu) and of its slope in T
     double a[kMostElements];
 
     /// Solves L v = v in place.
@@ -124,8 +126,7 @@ const Eigen::VectorXd& Solver::samplesAt(double T) {
     system_->sampleGibbs(T, sampleG_);
     const auto& samples = system_->samples();
     for (size_t p = 0; p < allowed_.size(); ++p)
-        if (!allowed_[p])
-            sampleG_.segment(samples.first[p], samples.first[p + 1] - samples.first[p]).setConstant(1e30);
+        if (!allowed_[p]) sampleG_.segment(samples.first[p], samples.first[p + 1] - samples.first[p]).setConstant(1e30);
     sampleT_ = T;
     return sampleG_;
 }
@@ -171,12 +172,14 @@ void Solver::localize(const PhaseModel& model, const double* y, double T, Local&
     for (int i = 0; i < n; ++i)
         for (int j = 0; j <= i; ++j) {
             const int si = model.sublattice[static_cast<size_t>(i)], sj = model.sublattice[static_cast<size_t>(j)];
-            double B = H[i * n + j] - root[i] * q[j * subs + si] - root[j] * q[i * subs + sj] + root[i] * root[j] * R[si * subs + sj];
+            double B = H[i * n + j] - root[i] * q[j * subs + si] - root[j] * q[i * subs + sj] +
+                       root[i] * root[j] * R[si * subs + sj];
             if (si == sj) B += kappa * root[i] * root[j];
             H[i * n + j] = B;
         }
     local.shifted = false;
-    for (double shift = 0; !local.factor(H, shift, n); shift = shift == 0 ? 0.05 * least : 2 * shift) local.shifted = true;
+    for (double shift = 0; !local.factor(H, shift, n); shift = shift == 0 ? 0.05 * least : 2 * shift)
+        local.shifted = true;
     for (int e = 0; e < elements; ++e)
         for (int c = 0; c < n; ++c) local.W[c * elements + e] = 0;
     for (int k = 0; k < n; ++k) {
@@ -230,7 +233,8 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
             const int n = model.size;
             localize(model, set.y.data(), p.T, local, condition != nullptr);
             local.residual(model, p.mu.data());
-            const Eigen::Map<const Eigen::Matrix<double, Eigen::Dynamic, Eigen::Dynamic, Eigen::RowMajor>> W(local.W, n, elements);
+            const Eigen::Map<const Eigen::Matrix<double, Eigen::Dynamic, Eigen::Dynamic, Eigen::RowMajor>> W(local.W, n,
+                                                                                                             elements);
             const Eigen::Map<const Eigen::VectorXd> w0(local.w0, n), a(local.a, elements), wT(local.wT, n);
             Eigen::MatrixXd K = W.transpose() * W;
             M.topLeftCorner(elements, elements) += set.n * K;
@@ -253,9 +257,9 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
         }
         // Scaled so that a trace element's row weighs as much as iron's.
         scale.setOnes(size);
-        for (int e = 0; e < elements; ++e)
-            scale[e] = 1 / std::sqrt(std::max(M(e, e), 1e-3 * b_[e] / (kGas * p.T)));
-        for (int s = 0; s < sets; ++s) scale[elements + s] = 1 / (locals[static_cast<size_t>(s)].atoms * std::sqrt(kGas * p.T));
+        for (int e = 0; e < elements; ++e) scale[e] = 1 / std::sqrt(std::max(M(e, e), 1e-3 * b_[e] / (kGas * p.T)));
+        for (int s = 0; s < sets; ++s)
+            scale[elements + s] = 1 / (locals[static_cast<size_t>(s)].atoms * std::sqrt(kGas * p.T));
         if (condition) scale[size - 1] = 1 / std::max(M.row(size - 1).cwiseAbs().maxCoeff(), 1e-300);
         Eigen::VectorXd columns = scale;
         if (condition) columns[size - 1] = 1;
@@ -263,7 +267,8 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
         const Eigen::PartialPivLU<Eigen::MatrixXd> lu(scaled);
         const Eigen::VectorXd scaledRhs = scale.asDiagonal() * rhs;
         x = lu.solve(scaledRhs);
-        if (!x.allFinite() || (scaled * x - scaledRhs).cwiseAbs().maxCoeff() > 1e-6 * (1 + scaledRhs.cwiseAbs().maxCoeff()))
+        if (!x.allFinite() ||
+            (scaled * x - scaledRhs).cwiseAbs().maxCoeff() > 1e-6 * (1 + scaledRhs.cwiseAbs().maxCoeff()))
             x = scaled.completeOrthogonalDecomposition().solve(scaledRhs);
         if (!x.allFinite()) return false;
         if (done) {
@@ -301,7 +306,8 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
             double change = 0, alpha = 1;
             for (int c = 0; c < n; ++c) {
                 largest = std::max(largest, std::abs(dz[c]));
-                if (set.y[static_cast<size_t>(c)] > 1e-12) largest = std::max(largest, 1e-3 * std::abs(dz[c]) / local.root[c]);
+                if (set.y[static_cast<size_t>(c)] > 1e-12)
+                    largest = std::max(largest, 1e-3 * std::abs(dz[c]) / local.root[c]);
                 change = std::max(change, std::abs(dz[c] * local.root[c]));
             }
             if (change > 0.25) {
@@ -387,7 +393,8 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
             for (const PhaseSet& set : sets)
                 if (set.phase == m.set.phase && distance2(set.y.data(), y, n) < 2e-3) return;
             for (const Minimum& other : known)
-                if (other.set.phase == m.set.phase && distance2(other.set.y.data(), y, n) < 1e-4 && other.height < m.height + 1e-6)
+                if (other.set.phase == m.set.phase && distance2(other.set.y.data(), y, n) < 1e-4 &&
+                    other.height < m.height + 1e-6)
                     return;
         }
         if (!local.shifted && decrement < 1e-9) {
@@ -431,7 +438,8 @@ double Solver::prove(Point& p, bool thorough) {
         const int first = samples.first[f], count = samples.first[f + 1] - first;
         const double most = samples.atoms.segment(first, count).maxCoeff();
         if (tracked) {
-            // Between two states the height of a phase changes almost linearly over its corners, all of which are samples.
+            // Between two states the height of a phase changes almost linearly over its corners, all of which are
+            // samples.
             const double fall = (p.sampleHeight.segment(first, count) - height_.segment(first, count)).maxCoeff();
             const double bound = p.lowest[f] - 1.25 * std::max(fall, 0.0) - 0.01 * RT;
             if (bound > 0.02 * RT * most) {
@@ -469,7 +477,8 @@ double Solver::prove(Point& p, bool thorough) {
         std::sort(order.begin(), order.end());
         const auto taken = [&](int kind) {
             for (const PhaseSet& set : p.sets)
-                if (set.phase == static_cast<int>(f) && system_->kindOf(static_cast<int>(f), set.y.data()) == kind) return true;
+                if (set.phase == static_cast<int>(f) && system_->kindOf(static_cast<int>(f), set.y.data()) == kind)
+                    return true;
             for (size_t k = firstFound; k < found.size(); ++k)
                 if (system_->kindOf(static_cast<int>(f), found[k].set.y.data()) == kind) return true;
             return false;
@@ -486,7 +495,8 @@ double Solver::prove(Point& p, bool thorough) {
         for (size_t k = firstFound; k < found.size(); ++k) low = std::min(low, found[k].height);
         for (const PhaseSet& set : p.sets)
             if (set.phase == static_cast<int>(f)) low = std::min(low, 0.0);
-        if (low == std::numeric_limits<double>::infinity()) low = reach - 3 * RT * most;  // nothing near: searched again soon
+        if (low == std::numeric_limits<double>::infinity())
+            low = reach - 3 * RT * most;  // nothing near: searched again soon
         lowest[f] = low;
     }
     for (const Minimum& m : found) proof = std::max(proof, -m.height / m.set.atoms);
@@ -519,7 +529,8 @@ bool Solver::solveHull(Hull& hull, const std::vector<PhaseSet>& extra, bool with
         G[k] = set.gibbs;
         atoms[k] = set.atoms;
     }
-    hull.solve(b_, {&samples.composition, &sampleG_, &samples.atoms, withSamples ? samples.count() : 0}, {&A, &G, &atoms, count});
+    hull.solve(b_, {&samples.composition, &sampleG_, &samples.atoms, withSamples ? samples.count() : 0},
+               {&A, &G, &atoms, count});
     return hull.feasible;
 }
 
@@ -585,8 +596,10 @@ void Solver::addOverall(std::vector<PhaseSet>& into, double T) const {
         for (size_t c = 0; c < static_cast<size_t>(model.size); ++c) {
             const auto s = static_cast<size_t>(model.sublattice[c]);
             sites[s] = model.sites[c];
-            if (model.element[c] < 0) vacant[s] = true;
-            else held[s] += b_[model.element[c]];
+            if (model.element[c] < 0)
+                vacant[s] = true;
+            else
+                held[s] += b_[model.element[c]];
         }
         double units = 0;
         for (size_t s = 0; s < held.size(); ++s)
@@ -601,7 +614,8 @@ void Solver::addOverall(std::vector<PhaseSet>& into, double T) const {
         set.phase = static_cast<int>(f);
         for (size_t c = 0; c < static_cast<size_t>(model.size); ++c) {
             const auto s = static_cast<size_t>(model.sublattice[c]);
-            const double y = model.element[c] < 0 ? 1 - held[s] / sites[s] / units : b_[model.element[c]] / sites[s] / units;
+            const double y =
+                model.element[c] < 0 ? 1 - held[s] / sites[s] / units : b_[model.element[c]] / sites[s] / units;
             set.y[c] = std::max(y, kFloor);
         }
         complete(set, T);
@@ -713,7 +727,8 @@ Result<Done> Solver::solveCold(double T) {
         point_ = std::move(q);
         return Done{};
     }
-    return Error{Fault::noConvergence, "the equilibrium at " + std::to_string(celsius(T)) + " °C did not converge", "", {}};
+    return Error{
+        Fault::noConvergence, "the equilibrium at " + std::to_string(celsius(T)) + " °C did not converge", "", {}};
 }
 
 Result<Done> Solver::solve(double T) {

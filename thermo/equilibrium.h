@@ -13,17 +13,17 @@ namespace soak {
 
 /// One composition set of one phase.
 struct PhaseSet {
-    int phase = 0;                                  ///< index into System::phases
-    double n = 0;                                   ///< mole of formula units per mole of atoms of the alloy
-    double atoms = 0;                               ///< mole of atoms per formula unit
-    double gibbs = 0;                               ///< J per mole of formula unit
-    std::array<double, PhaseModel::kMost> y{};      ///< site fractions
+    int phase = 0;                              ///< index into System::phases
+    double n = 0;                               ///< mole of formula units per mole of atoms of the alloy
+    double atoms = 0;                           ///< mole of atoms per formula unit
+    double gibbs = 0;                           ///< J per mole of formula unit
+    std::array<double, PhaseModel::kMost> y{};  ///< site fractions
 };
 
 /// A local minimum of one phase's distance to the tangent plane.
 struct Minimum {
-    PhaseSet set;        ///< n unused
-    double height = 0;   ///< G - mu a, J per mole of formula unit; negative = the phase wants to form
+    PhaseSet set;       ///< n unused
+    double height = 0;  ///< G - mu a, J per mole of formula unit; negative = the phase wants to form
 };
 
 /// One solved state. `minima` and `lowest` speed up the next state near it; they carry no part of the answer.
@@ -47,7 +47,8 @@ struct Condition {
 ///   1. Start: warm from the last point, or cold: lower hull over samples of every phase by linear programming.
 ///   2. Refine: Newton on chemical potentials, amounts and site fractions together.
 ///      M. Hillert, Physica 103B (1981) 31-40; B. Sundman, X.-G. Lu, H. Ohtani, Comput. Mater. Sci. 101 (2015) 127-137.
-///   3. Prove: minimise every phase's distance to the tangent plane from several starts; what lies below enters, and 2 runs again.
+///   3. Prove: minimise every phase's distance to the tangent plane from several starts; what lies below enters, and 2
+///   runs again.
 ///   4. When 2 fails, new columns from 3 refine the hull until its plane is near enough for Newton.
 class Solver {
 public:
@@ -72,14 +73,17 @@ public:
     /// Proves a point at its temperature; returns the largest driving force (J per mole of atoms).
     double prove(Point& point, bool thorough);
 
-    struct Counters { long states = 0, cold = 0, newton = 0, descents = 0, descentSteps = 0, hulls = 0, fallbacks = 0; };
+    struct Counters {
+        long states = 0, cold = 0, newton = 0, descents = 0, descentSteps = 0, hulls = 0, fallbacks = 0;
+    };
     Counters counters;
 
 private:
     struct Local;
     void localize(const PhaseModel& model, const double* y, double T, Local& local, bool withSlope) const;
     bool refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db);
-    void descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std::vector<Minimum>& known, const std::vector<PhaseSet>& sets);
+    void descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std::vector<Minimum>& known,
+                 const std::vector<PhaseSet>& sets);
     bool converge(Point& p, bool thorough);
     bool exchange(Point& p, const std::vector<Minimum>& entering);
     Point coldStart(double T);

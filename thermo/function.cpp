@@ -13,9 +13,9 @@ namespace {
 
 struct Term {
     double factor = 1;
-    int power = 0;      // of T
-    bool log = false;   // times ln T
-    std::string name;   // of a function, or empty
+    int power = 0;     // of T
+    bool log = false;  // times ln T
+    std::string name;  // of a function, or empty
 };
 
 /// The place of T^power (ln T) in the basis, or nothing.
@@ -26,18 +26,30 @@ std::optional<int> placeInBasis(int power, bool log) {
         return {};
     }
     switch (power) {
-        case 0: return 0;
-        case 1: return 1;
-        case 2: return 3;
-        case 3: return 4;
-        case 4: return 5;
-        case 6: return 6;
-        case 7: return 7;
-        case -1: return 8;
-        case -2: return 9;
-        case -3: return 10;
-        case -9: return 11;
-        default: return {};
+        case 0:
+            return 0;
+        case 1:
+            return 1;
+        case 2:
+            return 3;
+        case 3:
+            return 4;
+        case 4:
+            return 5;
+        case 6:
+            return 6;
+        case 7:
+            return 7;
+        case -1:
+            return 8;
+        case -2:
+            return 9;
+        case -3:
+            return 10;
+        case -9:
+            return 11;
+        default:
+            return {};
     }
 }
 
@@ -101,7 +113,8 @@ private:
             return {};
         }
         size_t length = 0;
-        while (length < rest_.size() && (std::isalnum(static_cast<unsigned char>(rest_[length])) || rest_[length] == '_'))
+        while (length < rest_.size() &&
+               (std::isalnum(static_cast<unsigned char>(rest_[length])) || rest_[length] == '_'))
             ++length;
         const std::string word(rest_.substr(0, length));
         rest_.remove_prefix(length);
@@ -134,8 +147,9 @@ Powers basisAt(double T) {
 
 Powers basisSlopeAt(double T) {
     const double logT = std::log(T), T2 = T * T, T3 = T2 * T, T6 = T3 * T3;
-    return {0,      1,       logT + 1,        2 * T,           3 * T2,              4 * T3, 6 * T3 * T2,
-            7 * T6, -1 / T2, -2 / T3, -3 / (T2 * T2), -9 / (T6 * T2 * T2), 1 / T};
+    return {0,           1,      logT + 1, 2 * T,   3 * T2,         4 * T3,
+            6 * T3 * T2, 7 * T6, -1 / T2,  -2 / T3, -3 / (T2 * T2), -9 / (T6 * T2 * T2),
+            1 / T};
 }
 
 const Powers& Function::coefficientsAt(double T) const {

@@ -10,7 +10,8 @@
 
 namespace soak {
 
-/// The temperature basis of every function in the data: 1, T, T ln T, T^2, T^3, T^4, T^6, T^7, T^-1, T^-2, T^-3, T^-9, ln T.
+/// The temperature basis of every function in the data: 1, T, T ln T, T^2, T^3, T^4, T^6, T^7, T^-1, T^-2, T^-3, T^-9,
+/// ln T.
 inline constexpr int kPowers = 13;
 using Powers = std::array<double, kPowers>;
 

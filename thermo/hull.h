@@ -15,10 +15,10 @@ struct Hull {
         const Eigen::VectorXd* atoms;  ///< pricing is per mole of atoms
         Eigen::Index count;
     };
-    std::vector<int> basis;   ///< column of each row: 0.. = first block, then the second; negative = artificial
-    Eigen::VectorXd amount;   ///< of the basis columns
-    Eigen::VectorXd mu;       ///< the plane through the basis columns
-    bool feasible = false;    ///< no artificial column carries an amount
+    std::vector<int> basis;  ///< column of each row: 0.. = first block, then the second; negative = artificial
+    Eigen::VectorXd amount;  ///< of the basis columns
+    Eigen::VectorXd mu;      ///< the plane through the basis columns
+    bool feasible = false;   ///< no artificial column carries an amount
 
     void solve(const Eigen::VectorXd& b, const Block& first, const Block& second);
 };

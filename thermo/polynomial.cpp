@@ -12,7 +12,8 @@ inline void addTo(double* H, int n, int i, int j, double value) { H[i < j ? i * 
 
 /// sum over the monomials of one degree; the degree is a template argument so that the loops unroll.
 template <int D, class Monomial>
-double monomialSum(const Monomial* first, const Monomial* last, const double* at, const double* y, double* g, double* H, int n) {
+double monomialSum(const Monomial* first, const Monomial* last, const double* at, const double* y, double* g, double* H,
+                   int n) {
     double sum = 0;
     for (; first != last; ++first) {
         const double p = at[first->row];
@@ -30,7 +31,8 @@ double monomialSum(const Monomial* first, const Monomial* last, const double* at
         for (int i = 0; i < D; ++i) {
             double between = before[i];
             for (int j = i + 1; j < D; ++j) {
-                H[first->factor[static_cast<size_t>(i)] * n + first->factor[static_cast<size_t>(j)]] += between * after[j + 1];
+                H[first->factor[static_cast<size_t>(i)] * n + first->factor[static_cast<size_t>(j)]] +=
+                    between * after[j + 1];
                 between *= v[j];
             }
         }
@@ -41,8 +43,8 @@ double monomialSum(const Monomial* first, const Monomial* last, const double* at
 /// Adds C(y) u(y) where C is the product of the context and u a local function of `members` with known derivatives.
 template <int M, class Context>
 double addLocal(const Context& context, const std::array<int, M>& member, const double* y, double u,
-                const std::array<double, M>& first, const std::array<std::array<double, M>, M>& second, double* g, double* H,
-                int n) {
+                const std::array<double, M>& first, const std::array<std::array<double, M>, M>& second, double* g,
+                double* H, int n) {
     const int size = context.size;
     double all = 1;
     double without[8];
@@ -126,18 +128,22 @@ void Polynomial::finish() {
         addMonomial(it->row[0], std::move(factors));
         it = binaries_.erase(it);
     }
-    std::stable_sort(monomials_.begin(), monomials_.end(), [](const auto& x, const auto& y) { return x.degree < y.degree; });
+    std::stable_sort(monomials_.begin(), monomials_.end(),
+                     [](const auto& x, const auto& y) { return x.degree < y.degree; });
     for (size_t d = 0; d < degreeStart_.size(); ++d)
-        degreeStart_[d] = static_cast<size_t>(std::count_if(monomials_.begin(), monomials_.end(),
-                                                            [d](const auto& m) { return m.degree < static_cast<int>(d); }));
+        degreeStart_[d] = static_cast<size_t>(std::count_if(
+            monomials_.begin(), monomials_.end(), [d](const auto& m) { return m.degree < static_cast<int>(d); }));
 }
 
 double Polynomial::derivatives(const double* at, const double* y, double* g, double* H, int n) const {
     const Monomial* m = monomials_.data();
     const auto& start = degreeStart_;
-    double sum = monomialSum<1>(m + start[1], m + start[2], at, y, g, H, n) + monomialSum<2>(m + start[2], m + start[3], at, y, g, H, n) +
-                 monomialSum<3>(m + start[3], m + start[4], at, y, g, H, n) + monomialSum<4>(m + start[4], m + start[5], at, y, g, H, n) +
-                 monomialSum<5>(m + start[5], m + start[6], at, y, g, H, n) + monomialSum<6>(m + start[6], m + start[7], at, y, g, H, n);
+    double sum = monomialSum<1>(m + start[1], m + start[2], at, y, g, H, n) +
+                 monomialSum<2>(m + start[2], m + start[3], at, y, g, H, n) +
+                 monomialSum<3>(m + start[3], m + start[4], at, y, g, H, n) +
+                 monomialSum<4>(m + start[4], m + start[5], at, y, g, H, n) +
+                 monomialSum<5>(m + start[5], m + start[6], at, y, g, H, n) +
+                 monomialSum<6>(m + start[6], m + start[7], at, y, g, H, n);
     for (const auto& group : binaries_) {
         const double ya = y[group.a], yb = y[group.b], d = ya - yb, yy = ya * yb;
         double p = 0, p1 = 0, p2 = 0;  // Horner with both derivatives
@@ -166,7 +172,8 @@ double Polynomial::derivatives(const double* at, const double* y, double* g, dou
             first[i] = two[i] * w + all * D[i];
         }
         for (size_t i = 0; i < 3; ++i)
-            for (size_t j = 0; j < 3; ++j) second[i][j] = two[i] * D[j] + two[j] * D[i] + (i == j ? 0 : v[3 - i - j] * w);
+            for (size_t j = 0; j < 3; ++j)
+                second[i][j] = two[i] * D[j] + two[j] * D[i] + (i == j ? 0 : v[3 - i - j] * w);
         sum += addLocal<3>(group.context, group.member, y, all * w, first, second, g, H, n);
     }
     return sum;
@@ -174,7 +181,9 @@ double Polynomial::derivatives(const double* at, const double* y, double* g, dou
 
 double Polynomial::value(const double* at, const double* y) const { return derivatives(at, y, nullptr, nullptr, 0); }
 
-double Polynomial::gradient(const double* at, const double* y, double* g) const { return derivatives(at, y, g, nullptr, 0); }
+double Polynomial::gradient(const double* at, const double* y, double* g) const {
+    return derivatives(at, y, g, nullptr, 0);
+}
 
 void Polynomial::weights(const double* y, double* out) const {
     const auto product = [y](const auto& factor, int size) {

@@ -15,7 +15,7 @@ namespace soak {
 /// Cost: O(terms); no allocation in evaluation.
 class Polynomial {
 public:
-    static constexpr int kFactors = 6;   ///< the most constituents in one term
+    static constexpr int kFactors = 6;  ///< the most constituents in one term
     static constexpr int kOrders = 10;
 
     void addMonomial(int row, std::vector<int> factors);
@@ -30,7 +30,8 @@ public:
     double value(const double* at, const double* y) const;
     /// Adds the gradient to g (n) and returns the value.
     double gradient(const double* at, const double* y, double* g) const;
-    /// Adds the gradient to g (n) and the upper triangle of the Hessian to H (row-major n x n, i <= j); returns the value.
+    /// Adds the gradient to g (n) and the upper triangle of the Hessian to H (row-major n x n, i <= j); returns the
+    /// value.
     double derivatives(const double* at, const double* y, double* g, double* H, int n) const;
     /// Adds d(value)/d(at[row]) to out[row]: what each coefficient is multiplied by at y.
     void weights(const double* y, double* out) const;

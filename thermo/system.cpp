@@ -42,7 +42,8 @@ Function defaultEndMember(const DataSet& data, const PhaseModel& model, const st
             if (e < 0) continue;
             const auto& reference = data.elements[static_cast<size_t>(elements[static_cast<size_t>(e)])].reference;
             const Powers& other = reference.coefficientsAt(start);
-            for (size_t k = 0; k < kPowers; ++k) piece.coefficients[k] += model.sites[static_cast<size_t>(c)] * other[k];
+            for (size_t k = 0; k < kPowers; ++k)
+                piece.coefficients[k] += model.sites[static_cast<size_t>(c)] * other[k];
         }
         function.pieces.push_back(piece);
     }
@@ -92,24 +93,29 @@ bool addTerm(const Parameter& p, const PhaseModel& model, int row, Polynomial& p
             if (found < 0) return false;
             members.push_back(found);
         }
-        if (members.size() == 1) context.push_back(members[0]);
-        else mixing.push_back(std::move(members));
+        if (members.size() == 1)
+            context.push_back(members[0]);
+        else
+            mixing.push_back(std::move(members));
     }
     const auto all = [&] {
         std::vector<int> factors = context;
         for (const auto& members : mixing) factors.insert(factors.end(), members.begin(), members.end());
         return factors;
     };
-    if (mixing.size() == 1 && mixing[0].size() == 2) polynomial.addBinary(row, p.order, context, mixing[0][0], mixing[0][1]);
+    if (mixing.size() == 1 && mixing[0].size() == 2)
+        polynomial.addBinary(row, p.order, context, mixing[0][0], mixing[0][1]);
     else if (mixing.size() == 1 && mixing[0].size() == 3 && p.order >= 0)
         polynomial.addTernary(row, p.order, context, mixing[0][0], mixing[0][1], mixing[0][2]);
-    else polynomial.addMonomial(row, all());
+    else
+        polynomial.addMonomial(row, all());
     return true;
 }
 
 }  // namespace
 
-void System::compilePhases(const DataSet& data, std::vector<std::vector<const Function*>>& rows, std::vector<Function>& made) {
+void System::compilePhases(const DataSet& data, std::vector<std::vector<const Function*>>& rows,
+                           std::vector<Function>& made) {
     for (size_t index = 0; index < data.phases.size(); ++index) {
         PhaseModel model = shapeOf(data, static_cast<int>(index), elements_);
         if (model.size == 0) continue;
@@ -222,7 +228,8 @@ void System::makeSamples() {
         const PhaseModel& model = phases_[p];
         samples_.first.push_back(samples_.count());
         int kinds = 1;
-        for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s) kinds *= model.start[s + 1] - model.start[s];
+        for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s)
+            kinds *= model.start[s + 1] - model.start[s];
         samples_.kinds.push_back(kinds);
         const auto add = [&](const std::vector<double>& y) {
             samples_.phase.push_back(static_cast<int>(p));
@@ -230,12 +237,14 @@ void System::makeSamples() {
             samples_.offset.push_back(static_cast<int>(samples_.y.size()));
             samples_.y.insert(samples_.y.end(), y.begin(), y.end());
         };
-        // Corners: every combination of one main constituent per sublattice; then the same with two sharing the largest one.
+        // Corners: every combination of one main constituent per sublattice; then the same with two sharing the largest
+        // one.
         const auto corners = [&](auto&& self, size_t s, std::vector<double> y) -> void {
             if (s == static_cast<size_t>(model.sublattices)) return add(y);
             const int first = model.start[s], last = model.start[s + 1], n = last - first;
             for (int main = first; main < last; ++main) {
-                for (int c = first; c < last; ++c) y[static_cast<size_t>(c)] = n == 1 ? 1 : c == main ? 1 - kSoft : kSoft / (n - 1);
+                for (int c = first; c < last; ++c)
+                    y[static_cast<size_t>(c)] = n == 1 ? 1 : c == main ? 1 - kSoft : kSoft / (n - 1);
                 self(self, s + 1, y);
             }
         };
@@ -300,8 +309,8 @@ void System::sampleGibbs(double T, Eigen::VectorXd& G) const {
             const int first = firstRow_[p], rows = firstRow_[p + 1] - first;
             std::fill(weight.begin() + first, weight.begin() + first + rows, 0.0);
             phases_[p].gibbsTerms.weights(samples_.site(k), weight.data());
-            kept.coefficients.row(k).noalias() =
-                Eigen::Map<const Eigen::RowVectorXd>(weight.data() + first, rows) * ranges_[range].middleRows(first, rows);
+            kept.coefficients.row(k).noalias() = Eigen::Map<const Eigen::RowVectorXd>(weight.data() + first, rows) *
+                                                 ranges_[range].middleRows(first, rows);
         }
     });
     const Powers basis = basisAt(T);
@@ -310,7 +319,8 @@ void System::sampleGibbs(double T, Eigen::VectorXd& G) const {
     for (int k = 0; k < samples_.count(); ++k)
         if (const auto i = static_cast<size_t>(k); samples_.Tc[i] > 0 && samples_.beta[i] > 0)
             G[k] += magneticGibbs(T, samples_.Tc[i], samples_.beta[i],
-                                  phases_[static_cast<size_t>(samples_.phase[i])].structureFactor).G;
+                                  phases_[static_cast<size_t>(samples_.phase[i])].structureFactor)
+                        .G;
 }
 
 }  // namespace soak

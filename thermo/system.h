@@ -14,9 +14,9 @@ class DataSet;
 
 /// The models of every phase that can form from a set of elements, compiled once and shared by threads.
 ///
-/// Besides the models it holds *samples*: a fixed spread of site fractions over every phase. G of all samples at T is one
-/// matrix-vector product, so that a cold start sees every corner of every phase for the price of one evaluation, and a
-/// proof starts its searches where the samples say that a phase comes near the tangent plane.
+/// Besides the models it holds *samples*: a fixed spread of site fractions over every phase. G of all samples at T is
+/// one matrix-vector product, so that a cold start sees every corner of every phase for the price of one evaluation,
+/// and a proof starts its searches where the samples say that a phase comes near the tangent plane.
 class System {
 public:
     /// `elements`: indices into the data set, ascending.
@@ -32,16 +32,16 @@ public:
     void slopesAt(double T, Eigen::VectorXd& at) const;
 
     struct Samples {
-        Eigen::MatrixXd composition;      ///< elements x count: moles of atoms per formula unit
-        Eigen::VectorXd atoms;            ///< moles of atoms per formula unit
-        Eigen::VectorXd idealEntropy;     ///< R sum a y ln y, J/K
-        std::vector<int> phase;           ///< index into phases()
-        std::vector<int> kind;            ///< class within the phase: main constituent of every sublattice
-        std::vector<int> offset;          ///< of the sample's site fractions in `y`
+        Eigen::MatrixXd composition;   ///< elements x count: moles of atoms per formula unit
+        Eigen::VectorXd atoms;         ///< moles of atoms per formula unit
+        Eigen::VectorXd idealEntropy;  ///< R sum a y ln y, J/K
+        std::vector<int> phase;        ///< index into phases()
+        std::vector<int> kind;         ///< class within the phase: main constituent of every sublattice
+        std::vector<int> offset;       ///< of the sample's site fractions in `y`
         std::vector<double> y;
-        std::vector<int> first;           ///< first sample of each phase, and one past the last: phases + 1
-        std::vector<int> kinds;           ///< number of classes of each phase
-        std::vector<double> Tc, beta;     ///< magnetism at the sample, 0 where there is none
+        std::vector<int> first;        ///< first sample of each phase, and one past the last: phases + 1
+        std::vector<int> kinds;        ///< number of classes of each phase
+        std::vector<double> Tc, beta;  ///< magnetism at the sample, 0 where there is none
         int count() const { return static_cast<int>(phase.size()); }
         const double* site(int sample) const { return y.data() + offset[static_cast<size_t>(sample)]; }
     };
@@ -57,15 +57,16 @@ private:
         std::once_flag once;
         Coefficients coefficients;
     };
-    void compilePhases(const DataSet& data, std::vector<std::vector<const Function*>>& rows, std::vector<Function>& made);
+    void compilePhases(const DataSet& data, std::vector<std::vector<const Function*>>& rows,
+                       std::vector<Function>& made);
     void makeSamples();
     size_t rangeOf(double T) const;
 
     std::vector<int> elements_;
     std::vector<PhaseModel> phases_;
-    std::vector<int> firstRow_;           ///< of each phase in the parameters, and one past the last
+    std::vector<int> firstRow_;  ///< of each phase in the parameters, and one past the last
     int parameters_ = 0;
-    std::vector<double> breaks_;          ///< lower end of each temperature range
+    std::vector<double> breaks_;  ///< lower end of each temperature range
     std::vector<Coefficients> ranges_;
     Samples samples_;
     mutable std::vector<std::unique_ptr<SampleRange>> sampleRanges_;
