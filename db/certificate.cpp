@@ -3,6 +3,7 @@
 
 #include <QFileInfo>
 #include <QRegularExpression>
+#include <algorithm>
 #include <map>
 
 #include "db/certificate_columns.h"
@@ -128,6 +129,9 @@ CertificateRow readRow(const CsvRow& csv, const CertificateColumns& columns, con
         if (columns.isElement(i))
             readElement(row, meaning, columns.names[i], cell(i), columns.units[size_t(i)], comma_is_usual);
     }
+    const bool has_value = std::any_of(row.heat.analysis.begin(), row.heat.analysis.end(),
+                                       [](const auto& content) { return content.second.wt.has_value(); });
+    if (!has_value) hold(row, {}, "the row has no analysis");
     if (row.usable()) checkSum(row);
     return row;
 }
@@ -195,10 +199,14 @@ void holdConflicts(std::vector<CertificateRow>& rows) {
     for (auto& [key, same] : by_number)
         for (CertificateRow* row : same)
             for (const CertificateRow* other : same) {
-                if (row == other || sameChemistry(row->heat.analysis, other->heat.analysis)) continue;
-                const QString why =
-                    "this heat number stands twice with different chemistry: " + differences(*row, *other) +
-                    ". A person must choose";
+                if (row == other) continue;
+                const bool same_grade = row->heat.grade == other->heat.grade;
+                if (same_grade && sameChemistry(row->heat.analysis, other->heat.analysis)) continue;
+                const QString what = same_grade ? "chemistry: " + differences(*row, *other)
+                                                : QString("grades: %1 here and %2 in line %3")
+                                                      .arg(row->heat.grade, other->heat.grade)
+                                                      .arg(other->line);
+                const QString why = "this heat number stands twice with different " + what + ". A person must choose";
                 row->findings.push_back({row->heat.number, row->line, {}, {}, {}, why, true});
                 hold(*row, {}, why);
             }
