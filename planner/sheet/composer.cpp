@@ -45,6 +45,11 @@ std::vector<Row> Composer::say(const QString& key, Type type, double x, double w
     return rows;
 }
 
+Type Composer::fitted(const QString& text, Type type, double width) const {
+    const double fits = type.size_pt * 0.99 * width / typesetter.width_mm(text, type);
+    return {std::max(std::min(type.size_pt, fits), body().size_pt), type.bold};
+}
+
 std::vector<Row> Composer::list(const QStringList& texts, Type type, double x, double width) const {
     constexpr double indent = 4;
     std::vector<Row> rows;

@@ -54,6 +54,8 @@ struct Composer {
     std::vector<Row> say(const QString& key, Type type, double x, double width, Wording::Values values = {}) const;
     /// Lines with a dash in front, each wrapped on its own.
     std::vector<Row> list(const QStringList& texts, Type type, double x, double width) const;
+    /// As large as `type` or as fits the width in one line, but not under the body's size.
+    Type fitted(const QString& text, Type type, double width) const;
     /// Boxes of equal width from x on, captions above them.
     Row boxes(const std::vector<FillIn>& fillIns, double x, double width) const;
     /// Left and right beside each other as one uncut row; when one is too tall for that, the right comes first.

@@ -78,7 +78,7 @@ private:
         overflowed_ = overflowed_ || y_ > bottom_;
     }
 
-    double ruleGap() const { return std::max(gap_ * 0.6, 1.2); }
+    double ruleGap() const { return std::max(gap_ * 0.6, 1.0); }
 
     void open(const Section& section, bool continued) {
         y_ += gap_;

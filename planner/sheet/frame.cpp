@@ -13,24 +13,26 @@ QString sheetName(const Composer& composer) {
     return composer.text("page.sheet", {{"number", content.number}, {"revision", content.revision}});
 }
 
-std::vector<Row> identity(const Composer& composer, double x, double width) {
+std::vector<Row> identity(const Composer& composer, double width) {
     const SheetContent& content = composer.content;
     const Typesetter& set = composer.typesetter;
-    std::vector<Row> rows = set.paragraph(sheetName(composer), composer.strong(), x, width);
-    QStringList lines;
-    if (!content.draft && !content.replaces.isEmpty())
-        lines << composer.text("page.replaces", {{"replaced", content.replaces}});
-    lines << composer.text(content.draft ? "page.date_of_draft" : "page.date", {{"date", iso(content.date)}});
-    if (!content.draft)
-        lines << (content.valid_until.isValid()
-                      ? composer.text("page.valid_until", {{"date", iso(content.valid_until)}})
-                      : composer.text("page.valid_withdrawn"));
-    for (const QString& line : lines) append(rows, set.paragraph(line, composer.body(), x, width));
+    std::vector<Row> rows = set.paragraph(sheetName(composer), composer.strong(), 0, width);
+    const auto add = [&](const QString& text) { append(rows, set.paragraph(text, composer.body(), 0, width)); };
+    const QString date =
+        composer.text(content.draft ? "page.date_of_draft" : "page.date", {{"date", iso(content.date)}});
+    if (content.draft) {
+        add(date);
+        return rows;
+    }
+    add(date + ", " +
+        (content.valid_until.isValid() ? composer.text("page.valid_until", {{"date", iso(content.valid_until)}})
+                                       : composer.text("page.valid_withdrawn")));
+    if (!content.replaces.isEmpty()) add(composer.text("page.replaces", {{"replaced", content.replaces}}));
     return rows;
 }
 
-/// Name over value, side by side across the page.
-std::vector<Row> jobRows(const Composer& composer) {
+/// Name over value, side by side.
+std::vector<Row> jobRows(const Composer& composer, double whole) {
     const SheetContent& content = composer.content;
     struct Entry {
         const char* key;
@@ -41,15 +43,15 @@ std::vector<Row> jobRows(const Composer& composer) {
     const auto add = [&](const char* key, const QString& value, double share) {
         if (!value.isEmpty()) entries.push_back({key, value, share});
     };
-    add("job.cycle", content.cycle, 0.7);
+    add("job.cycle", content.cycle, 0.8);
     add("job.specification", content.specification, 1.2);
-    add("job.customer", content.customer, 1.1);
-    add("job.order", content.order, 0.7);
+    add("job.customer", content.customer, 1.2);
+    add("job.order", content.order, 0.8);
     double shares = 0, x = 0;
     for (const Entry& entry : entries) shares += entry.share;
     std::vector<Row> rows;
     for (const Entry& entry : entries) {
-        const double width = composer.page_width * entry.share / shares;
+        const double width = whole * entry.share / shares;
         const Typesetter& set = composer.typesetter;
         std::vector<Row> cell = set.paragraph(composer.both(entry.key).join(" / "), composer.caption(), x, width - 3);
         append(cell, set.paragraph(entry.value, composer.body(), x, width - 3));
@@ -78,7 +80,7 @@ std::vector<Row> firstHead(const Composer& composer) {
     const Typesetter& set = composer.typesetter;
     const double code = composer.templates.layout.code_mm, width = composer.page_width;
     const bool hasCode = !content.qr_payload.isEmpty() && !content.draft;
-    const double identityWidth = 66, identityX = width - identityWidth - (hasCode ? code + 3 : 0);
+    const double beside = hasCode ? width - code - 2 : width, identityWidth = 82, identityX = beside - identityWidth;
 
     std::vector<Row> left =
         set.paragraph(composer.words().word("kind", content.kind), composer.title(), 0, identityX - 4);
@@ -87,12 +89,13 @@ std::vector<Row> firstHead(const Composer& composer) {
         if (!second.isEmpty())
             append(left, set.paragraph(second, {composer.strong().size_pt, false}, 0, identityX - 4));
     }
-    std::vector<Row> rows = composer.beside(std::move(left), identity(composer, 0, identityWidth), identityX);
-    if (hasCode) {
-        rows.front().height = std::max(rows.front().height, code);
-        rows.front().marks.codes.push_back({QRectF(width - code, 0, code, code), 0, {}});  // filled in by the caller
+    std::vector<Row> rows = composer.beside(std::move(left), identity(composer, identityWidth), identityX);
+    rows.push_back(space(0.8));
+    append(rows, jobRows(composer, beside));
+    if (hasCode) {  // beside title and job; filled in by the caller
+        rows.front().marks.codes.push_back({QRectF(width - code, 0, code, code), 0, {}});
+        rows.back().height += std::max(0.0, code - heightOf(rows));
     }
-    append(rows, jobRows(composer));
     if (content.draft) {
         rows.push_back(space(1));
         append(rows, banner(composer, composer.both("page.draft").join(" / ") +
@@ -127,13 +130,12 @@ std::vector<Row> nextHead(const Composer& composer) {
 
 std::vector<Row> foot(const Composer& composer, int page, int pages) {
     const SheetContent& content = composer.content;
-    const double width = composer.page_width, right = width - 40;
+    const double width = composer.page_width, right = width - 30;
     const Typesetter& set = composer.typesetter;
-    std::vector<Row> rows = set.paragraph(composer.text("foot.deference"), composer.small(), 0, width);
-    if (composer.templates.second)
-        append(rows, set.paragraph(composer.under("foot.deference"), composer.small(), 0, width));
-    for (const QString& text : content.deference) append(rows, set.paragraph(text, composer.small(), 0, width));
-
+    QStringList lines{composer.text("foot.deference")};
+    const QString second = composer.under("foot.deference");
+    if (!second.isEmpty()) lines << second;
+    lines << content.deference;
     QStringList versions;
     const auto add = [&](const char* key, const char* name, const QString& value) {
         if (!value.isEmpty()) versions << composer.text(key, {{name, value}});
@@ -142,12 +144,11 @@ std::vector<Row> foot(const Composer& composer, int page, int pages) {
     add("foot.data", "data", (content.data_set + " " + content.data_version).trimmed());
     add("foot.rules", "rules", content.rules_version);
     add("foot.hash", "hash", content.content_hash);
+    lines << versions.join(" · ");
     const QString number =
         composer.text("page.number", {{"page", QString::number(page)}, {"pages", QString::number(pages)}});
-    std::vector<Row> left = set.paragraph(versions.join(" · "), composer.small(), 0, right - 4);
-    const std::vector<Row> place = set.paragraph(number, composer.bold(), 0, 40, Align::right);
-    append(rows, composer.beside(std::move(left), place, right));
-    return rows;
+    const std::vector<Row> place = set.paragraph(number, composer.bold(), 0, width - right, Align::right);
+    return composer.beside(set.paragraph(lines.join(" "), composer.small(), 0, right - 2), place, right);
 }
 
 }  // namespace soak

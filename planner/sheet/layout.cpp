@@ -17,6 +17,7 @@ struct Size {
 
 const std::vector<Size>& sizes() {
     static const std::vector<Size> all = {
+        {"leading", "most", &Layout::leading_most, 1.1, 2},   {"leading", "least", &Layout::leading_least, 1.1, 2},
         {"type_pt", "title", &Layout::title_pt, 14, 40},      {"type_pt", "strong", &Layout::strong_pt, 12, 24},
         {"type_pt", "body", &Layout::body_pt, 12, 20},        {"type_pt", "caption", &Layout::caption_pt, 8, 16},
         {"type_pt", "small", &Layout::small_pt, 7, 14},       {"type_pt", "value", &Layout::value_pt, 18, 40},
@@ -84,6 +85,7 @@ Result<Layout> Layout::parse(const QByteArray& toml, const QString& name) {
         layout.*size.member = *value;
     }
     if (layout.gap_least_mm > layout.gap_most_mm) return wrong(name, "size_mm.gap_least is larger than gap_most");
+    if (layout.leading_least > layout.leading_most) return wrong(name, "leading.least is larger than leading.most");
 
     layout.fonts = textList(table, "fonts");
     layout.signatures = textList(table, "signatures");

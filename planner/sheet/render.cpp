@@ -80,6 +80,21 @@ QString titleOf(const Composer& composer) {
                          : composer.text("page.sheet", {{"number", content.number}, {"revision", content.revision}});
 }
 
+Result<PreparedSheet> layOut(const SheetContent& content, const Templates& templates, Paper choice, double leading) {
+    const Layout& layout = templates.layout;
+    auto typesetter = Typesetter::of(layout, leading);
+    if (!typesetter) return std::move(typesetter).error().within("sheet");
+    const QPageSize paper(choice == Paper::a4 ? QPageSize::A4 : QPageSize::Letter);
+    const QSizeF size_mm = paper.size(QPageSize::Millimeter);
+    const double width = size_mm.width() - 2 * layout.margin_mm;
+    const Composer composer{content, templates, typesetter.value(), width, width - layout.gutter_mm};
+    auto pages = flow(composer, sectionsOf(composer), size_mm);
+    if (!pages) return std::move(pages).error().within("sheet");
+    auto coded = fillCode(content, pages.value());
+    if (!coded) return std::move(coded).error().within("sheet");
+    return PreparedSheet{paper, std::move(pages).value(), typesetter.value(), titleOf(composer), templates.notices};
+}
+
 }  // namespace
 
 Result<PreparedSheet> prepareSheet(const SheetContent& content, const SheetOptions& options) {
@@ -91,19 +106,10 @@ Result<PreparedSheet> prepareSheet(const SheetContent& content, const SheetOptio
     auto templates = loadTemplates(options.templates, options.language, options.second_language);
     if (!templates) return std::move(templates).error().within("templates");
     const Layout& layout = templates.value().layout;
-    auto typesetter = Typesetter::of(layout);
-    if (!typesetter) return std::move(typesetter).error().within("sheet");
-
-    const QPageSize paper(options.paper == Paper::a4 ? QPageSize::A4 : QPageSize::Letter);
-    const QSizeF size_mm = paper.size(QPageSize::Millimeter);
-    const double width = size_mm.width() - 2 * layout.margin_mm;
-    const Composer composer{content, templates.value(), typesetter.value(), width, width - layout.gutter_mm};
-    auto pages = flow(composer, sectionsOf(composer), size_mm);
-    if (!pages) return std::move(pages).error().within("sheet");
-    auto coded = fillCode(content, pages.value());
-    if (!coded) return std::move(coded).error().within("sheet");
-    return PreparedSheet{paper, std::move(pages).value(), typesetter.value(), titleOf(composer),
-                         templates.value().notices};
+    auto sheet = layOut(content, templates.value(), options.paper, layout.leading_most);
+    if (!sheet || sheet.value().pages.size() == 1) return sheet;
+    auto closer = layOut(content, templates.value(), options.paper, layout.leading_least);
+    return closer && closer.value().pages.size() < sheet.value().pages.size() ? closer : sheet;
 }
 
 Result<Done> printSheet(const PreparedSheet& sheet, QPagedPaintDevice& device) {

@@ -74,7 +74,7 @@ double addSensors(const Composer& composer, std::vector<SheetSensor> sensors, co
 }  // namespace
 
 Row loadSketch(const Composer& composer, const LoadSketch& sketch, double width) {
-    const QRectF zone(0.3, 0.3, std::min(width * 0.56, 40.0), 23);
+    const QRectF zone(0.3, 0.3, std::min(width * 0.56, 40.0), 19);
     Row row;
     row.marks.figures.push_back(rectangle(zone, 0.3));
     row.marks.figures.back().dashed = true;

@@ -3,14 +3,21 @@
 
 #include <QFontDatabase>
 #include <QFontMetricsF>
+#include <QRegularExpression>
 #include <algorithm>
 #include <cmath>
 
 namespace soak {
 namespace {
 
-/// Line ends and tabs become spaces; other control and direction characters, which could hide or turn a text, go. A
-/// thin space stays, and is no place to break: number and unit keep together.
+/// A number and its unit keep together: a thin space between them, which is no place to break.
+QString bound(QString text) {
+    static const QRegularExpression gap(
+        "(?<=[0-9]) (?=(?:(?:°C|°F|K|mm|m|s|min|h|kg|bar|mbar|Pa|MPa|HB|HRC|HV)\\b|%))");
+    return text.replace(gap, QString(QChar(0x2009)));
+}
+
+/// Line ends and tabs become spaces; other control and direction characters, which could hide or turn a text, go.
 QString printable(const QString& text) {
     QString clean;
     for (const QChar letter : text) {
@@ -24,11 +31,12 @@ QString printable(const QString& text) {
 
 }  // namespace
 
-Result<Typesetter> Typesetter::of(const Layout& layout) {
+Result<Typesetter> Typesetter::of(const Layout& layout, double leading) {
     for (const QString& family : layout.fonts) {
         if (!QFontDatabase::hasFamily(family)) continue;
         Typesetter typesetter;
         typesetter.family_ = family;
+        typesetter.leading_ = leading;
         return typesetter;
     }
     return Error{Fault::data,
@@ -78,7 +86,7 @@ QStringList Typesetter::lines(const QString& text, Type type, double width, doub
         lines << full;
         room = width / kUnit_mm;
     };
-    for (QString word : printable(text).split(' ', Qt::SkipEmptyParts)) {
+    for (QString word : bound(printable(text)).split(' ', Qt::SkipEmptyParts)) {
         const QString longer = line.isEmpty() ? word : line + ' ' + word;
         if (metrics.horizontalAdvance(longer) <= room) {
             line = longer;

@@ -18,14 +18,14 @@ inline constexpr double kUnit_mm = 0.01;
 /// Measures and breaks text of one family. Needs a QGuiApplication.
 class Typesetter {
 public:
-    /// Fault::data when none of the layout's families is installed.
-    static Result<Typesetter> of(const Layout& layout);
+    /// `leading`: distance between lines in type sizes. Fault::data when none of the layout's families is installed.
+    static Result<Typesetter> of(const Layout& layout, double leading);
 
     const QString& family() const { return family_; }
     QFont font(Type type) const;
     double width_mm(const QString& text, Type type) const;
     /// Distance from one line to the next.
-    double lineHeight_mm(Type type) const { return 1.24 * type.size_pt * kPoint_mm; }
+    double lineHeight_mm(Type type) const { return leading_ * type.size_pt * kPoint_mm; }
     double capHeight_mm(Type type) const;
     /// The size at which a digit is this high.
     double sizeForDigits_pt(double height_mm) const;
@@ -42,6 +42,7 @@ public:
 
 private:
     QString family_;
+    double leading_ = 1.2;
 };
 
 /// Rows under each other as one row that is not cut.

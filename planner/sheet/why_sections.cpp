@@ -84,6 +84,7 @@ QStringList smallPrint(const Composer& composer) {
     const auto add = [&](const char* key, const char* name, const QString& value) {
         if (!value.isEmpty()) lines << composer.text(key, {{name, value}});
     };
+    add("why.band", "rule", composer.word("rule", content.band_rule));
     add("why.rule", "rule", content.decision_rule);
     add("why.left_out", "elements", content.left_out.join(", "));
     add("why.published", "ranges", content.published.join("; "));
@@ -124,22 +125,25 @@ std::vector<Row> cautionRows(const Composer& composer, const SheetCaution& cauti
 
 }  // namespace
 
+/// Events in two columns, as each wraps for itself.
 std::optional<Section> wrongSection(const Composer& composer) {
     const SheetContent& content = composer.content;
     const Wording& words = composer.words();
-    const double left = 46, width = composer.content_width - left;
-    std::vector<Row> rows;
+    const double column = composer.content_width / 2, room = column - 4;
+    std::vector<std::vector<Row>> events;
     const auto add = [&](const QString& key, Wording::Values values = {}) {
-        append(rows, composer.say(key, composer.body(), 0, width, values));
+        events.push_back(composer.say(key, composer.body(), 0, room, values));
     };
     add("wrong.alarm");
     if (content.never_above) add("wrong.over", {{"temperature", words.number(*content.never_above)}});
     if (content.max_delay) add("wrong.late", {{"delay", words.number(*content.max_delay)}});
     add("wrong.short");
     for (const QString& text : content.if_wrong)
-        append(rows, composer.typesetter.paragraph(text, composer.body(), 0, width));
-    const std::vector<Row> action = composer.say("wrong.action", composer.strong(), 0, left - 4);
-    return Section{composer.both("wrong.heading"), 0, false, true, composer.beside(action, rows, left), false};
+        events.push_back(composer.typesetter.paragraph(text, composer.body(), 0, room));
+    std::vector<Row> rows = composer.say("wrong.action", composer.strong(), 0, composer.content_width);
+    for (size_t i = 0; i < events.size(); i += 2)
+        append(rows, composer.beside(events[i], i + 1 < events.size() ? events[i + 1] : std::vector<Row>(), column));
+    return Section{composer.both("wrong.heading"), 0, false, true, rows, false};
 }
 
 std::optional<Section> cautionSection(const Composer& composer) {
@@ -161,7 +165,7 @@ std::optional<Section> whySection(const Composer& composer) {
         append(rows, set.paragraph(content.verdict_sentence, composer.caption(), 0, width));
     for (const SheetLimit& limit : content.binding)
         append(rows, set.paragraph(limitText(composer, limit), composer.caption(), 0, width));
-    for (const QString& text : smallPrint(composer)) append(rows, set.paragraph(text, composer.small(), 0, width));
+    append(rows, set.paragraph(smallPrint(composer).join("  "), composer.small(), 0, width));
     return Section{composer.both("why.heading"), 0, false, false, rows, true};
 }
 

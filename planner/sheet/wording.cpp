@@ -2,9 +2,9 @@
 #include "planner/sheet/wording.h"
 
 #include <toml++/toml.h>
-#include <vector>
 #include <QRegularExpression>
 #include <cmath>
+#include <vector>
 
 namespace soak {
 namespace {
@@ -37,12 +37,10 @@ const std::vector<TextRule>& textRules() {
         {"setpoint.step", {"step"}},
         {"metal.heading", {}},
         {"metal.range", {"low", "high"}},
-        {"metal.rule", {"rule"}},
         {"metal.never_above", {"temperature"}},
         {"load.heading", {}},
         {"load.heat", {}},
         {"load.grade", {}},
-        {"load.form", {}},
         {"load.pieces", {}},
         {"load.section", {}},
         {"load.sketch", {}},
@@ -60,13 +58,13 @@ const std::vector<TextRule>& textRules() {
         {"soak.box_start", {}},
         {"soak.box_end", {}},
         {"soak.box_check", {}},
+        {"soak.box_chart", {}},
         {"soak.box_initials", {}},
         {"quench.heading", {}},
         {"quench.heading_cool", {}},
         {"quench.medium", {"medium"}},
         {"quench.cooling", {"cooling"}},
         {"quench.within", {}},
-        {"quench.delay", {"delay"}},
         {"quench.box_door", {}},
         {"quench.box_under", {}},
         {"quench.box_start", {}},
@@ -78,7 +76,6 @@ const std::vector<TextRule>& textRules() {
         {"after.heading", {}},
         {"after.next", {"step"}},
         {"after.check", {"check"}},
-        {"after.chart", {}},
         {"wrong.heading", {}},
         {"wrong.action", {}},
         {"wrong.alarm", {}},
@@ -99,6 +96,7 @@ const std::vector<TextRule>& textRules() {
         {"why.ceiling_none", {"cause"}},
         {"why.uncertainty", {"uncertainty"}},
         {"why.window", {"low", "high"}},
+        {"why.band", {"rule"}},
         {"why.rule", {"rule"}},
         {"why.grade", {"verdict"}},
         {"why.left_out", {"elements"}},
@@ -121,7 +119,6 @@ const std::vector<TextRule>& textRules() {
         {"second.soak_start", {}},
         {"second.soak_start_any", {}},
         {"second.quench_medium", {}},
-        {"second.quench_delay", {}},
         {"second.quench_cooling", {}},
         {"second.metal_never_above", {}},
         {"second.load_spacing", {}},

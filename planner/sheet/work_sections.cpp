@@ -9,6 +9,9 @@ namespace {
 
 using Hint = FillIn::Hint;
 
+/// Column of the one number of a step: minutes, seconds.
+constexpr double kValueColumn_mm = 34;
+
 /// The setpoint in digits, its unit, and the other unit smaller, all on one baseline.
 Row setpointDigits(const Composer& composer, double width) {
     const Typesetter& set = composer.typesetter;
@@ -16,7 +19,7 @@ Row setpointDigits(const Composer& composer, double width) {
     const TwoUnits& setpoint = composer.content.setpoint;
     const Type large{set.sizeForDigits_pt(digit), true}, unit{large.size_pt * 0.5, true};
     const double baseline = digit + 2.5;
-    Row row{baseline + 3, {}};
+    Row row{baseline + 1.8, {}};
     const auto put = [&](double x, const QString& text, Type type) {
         row.marks.texts.push_back(composer.onBaseline(x, baseline, text, type));
         return row.marks.texts.back().at.right();
@@ -50,23 +53,20 @@ std::vector<Row> metalColumn(const Composer& composer, double width) {
     std::vector<Row> rows = composer.say("metal.heading", composer.bold(), 0, width);
     rows.push_back(space(1));
     const QString first = range(composer, content.metal_low.controller, content.metal_high.controller);
-    Type large = composer.value();
-    large.size_pt = std::min(large.size_pt, large.size_pt * width / set.width_mm(first, large));
-    append(rows, set.paragraph(first, {std::max(large.size_pt, composer.strong().size_pt), true}, 0, width));
+    append(rows, set.paragraph(first, composer.fitted(first, composer.value(), width), 0, width));
     if (content.metal_low.other && content.metal_high.other)
         append(rows, set.paragraph("(" + range(composer, *content.metal_low.other, *content.metal_high.other) + ")",
                                    composer.body(), 0, width));
-    if (!content.band_rule.isEmpty())
-        append(rows, composer.say("metal.rule", composer.caption(), 0, width,
-                                  {{"rule", composer.word("rule", content.band_rule)}}));
     return rows;
 }
 
 /// Framed: the one number that must not be passed.
 std::vector<Row> neverAbove(const Composer& composer, double width) {
     if (!composer.content.never_above) return {};
-    std::vector<Row> rows = composer.say("metal.never_above", composer.strong(), 2, width - 4,
-                                         {{"temperature", composer.words().number(*composer.content.never_above)}});
+    const QString temperature = composer.words().number(*composer.content.never_above);
+    const Type type = composer.fitted(composer.text("metal.never_above", {{"temperature", temperature}}),
+                                      composer.strong(), width - 4);
+    const std::vector<Row> rows = composer.say("metal.never_above", type, 2, width - 4, {{"temperature", temperature}});
     Row framed = stacked(rows);
     framed.marks.move(0, 1);
     framed.height += 2;
@@ -102,7 +102,7 @@ QStringList heatCells(const Composer& composer, const SheetHeat& heat) {
 
 std::vector<Row> heatTable(const Composer& composer, double width) {
     static const std::vector<Column> columns = {
-        {"load.heat", 0.32}, {"load.grade", 0.33}, {"load.pieces", 0.16}, {"load.section", 0.19}};
+        {"load.heat", 0.30}, {"load.grade", 0.36}, {"load.pieces", 0.14}, {"load.section", 0.20}};
     QStringList captions;
     for (const Column& column : columns) captions << composer.both(column.key).join(" / ");
     std::vector<Row> rows = tableRow(composer, captions, columns, composer.caption(), width);
@@ -123,11 +123,37 @@ QStringList filled(const Composer& composer, const QString& key, const char* nam
     return lines;
 }
 
+struct Value {
+    QStringList caption;
+    QString text;
+};
+
+/// The one number of a step, large, in line with the boxes that the crew fills in.
+Row valueAndBoxes(const Composer& composer, const Value& value, const std::vector<FillIn>& boxes) {
+    Row row = composer.boxes(boxes, kValueColumn_mm, composer.content_width - kValueColumn_mm);
+    const double room = kValueColumn_mm - 2, box = composer.templates.layout.box_mm;
+    std::vector<Row> captions;
+    for (const QString& text : value.caption)
+        append(captions, composer.typesetter.paragraph(text, composer.caption(), 0, room));
+    Row caption = stacked(captions);
+    const double above = row.height - box - 0.5;  // of the boxes' captions
+    if (caption.height > above) {
+        row.marks.move(0, caption.height - above);
+        row.height += caption.height - above;
+    }
+    const double boxTop = row.height - box - 0.5;
+    caption.marks.move(0, boxTop - caption.height);
+    row.marks.add(std::move(caption.marks));
+    const Type type = composer.fitted(value.text, composer.value(), room);
+    row.marks.texts.push_back({QRectF(0, boxTop, room, box), value.text, type, Align::left});
+    return row;
+}
+
 }  // namespace
 
 std::optional<Section> setpointSection(const Composer& composer) {
     const SheetContent& content = composer.content;
-    const double right = composer.page_width * 0.62, width = composer.page_width - right, left = right - 6;
+    const double right = composer.page_width * 0.58, width = composer.page_width - right, left = right - 6;
     std::vector<Row> rows = composer.say("setpoint.heading", composer.bold(), 0, left);
     rows.push_back(setpointDigits(composer, left));
     const Wording& words = composer.words();
@@ -147,17 +173,13 @@ std::optional<Section> setpointSection(const Composer& composer) {
 
 std::optional<Section> loadSection(const Composer& composer) {
     const SheetContent& content = composer.content;
-    const double width = composer.content_width;
-    std::vector<Row> rows;
-    if (content.sketch) {
-        const double right = width * 0.58;
-        rows = composer.beside(heatTable(composer, right - 4), {loadSketch(composer, *content.sketch, width - right)},
-                               right);
-    } else {
-        rows = heatTable(composer, width);
-    }
+    const QStringList notes = content.load_notes + content.thermocouple_notes;
+    const double width = composer.content_width, right = width * 0.58, left = content.sketch ? right - 4 : width;
+    std::vector<Row> rows = heatTable(composer, left);
     rows.push_back(space(0.8));
-    append(rows, composer.list(content.load_notes + content.thermocouple_notes, composer.body(), 0, width));
+    append(rows, composer.list(notes, composer.body(), 0, left));
+    if (content.sketch)
+        rows = composer.beside(std::move(rows), {loadSketch(composer, *content.sketch, width - right)}, right);
     return Section{composer.both("load.heading"), 1, false, false, rows, true};
 }
 
@@ -175,82 +197,70 @@ std::optional<Section> heatUpSection(const Composer& composer) {
 std::optional<Section> soakSection(const Composer& composer) {
     const SheetContent& content = composer.content;
     const Wording& words = composer.words();
-    const double width = composer.content_width, right = width - 36;
-    const QString temperature = words.number(content.soak_start);
-    std::vector<Row> left =
+    const double width = composer.content_width;
+    const QString temperature = words.number(content.soak_start.controller);
+    std::vector<Row> rows =
         content.soak_sensor.isEmpty()
-            ? composer.say("soak.start_any", composer.strong(), 0, right - 4, {{"temperature", temperature}})
-            : composer.say("soak.start", composer.strong(), 0, right - 4,
+            ? composer.say("soak.start_any", composer.strong(), 0, width, {{"temperature", temperature}})
+            : composer.say("soak.start", composer.strong(), 0, width,
                            {{"sensor", content.soak_sensor}, {"temperature", temperature}});
-    std::vector<Row> time = composer.say("soak.minutes", composer.caption(), 0, 36);
     const QString minutes = content.soak_minutes ? words.number(Quantity{double(*content.soak_minutes), 0, "min"})
-                                                 : "____" + QString(QChar(0x2009)) + "min";
-    append(time, composer.typesetter.paragraph(minutes, composer.value(), 0, 36));
-    if (!content.soak_formula.isEmpty())
-        append(left, composer.typesetter.paragraph(composer.text("soak.formula", {{"formula", content.soak_formula}}),
-                                                   composer.small(), 0, right - 4));
-    std::vector<Row> rows = composer.beside(std::move(left), time, right);
+                                                 : "___" + QString(QChar(0x2009)) + "min";
     rows.push_back(space(0.8));
-    rows.push_back(composer.boxes({{composer.both("soak.box_start"), Hint::clock, ""},
-                                   {composer.both("soak.box_check"), Hint::nothing, content.setpoint.controller.unit},
-                                   {composer.both("soak.box_end"), Hint::clock, ""},
-                                   {composer.both("soak.box_initials"), Hint::nothing, ""}},
-                                  0, width));
+    rows.push_back(valueAndBoxes(composer, {composer.both("soak.minutes"), minutes},
+                                 {{composer.both("soak.box_start"), Hint::clock, ""},
+                                  {composer.both("soak.box_check"), Hint::nothing, content.setpoint.controller.unit},
+                                  {composer.both("soak.box_end"), Hint::clock, ""},
+                                  {composer.both("soak.box_chart"), Hint::nothing, ""},
+                                  {composer.both("soak.box_initials"), Hint::nothing, ""}}));
+    if (!content.soak_formula.isEmpty())
+        append(rows, composer.typesetter.paragraph(composer.text("soak.formula", {{"formula", content.soak_formula}}),
+                                                   composer.small(), 0, width));
     return Section{composer.both("soak.heading"), 1, false, false, rows, false};
 }
 
 std::optional<Section> quenchSection(const Composer& composer) {
     const SheetContent& content = composer.content;
     const Wording& words = composer.words();
-    const double width = composer.content_width, right = width - 36;
+    const double width = composer.content_width;
     const bool quenched = !content.quench_medium.isEmpty();
     if (!quenched && content.cooling.isEmpty()) return {};
-    const double room = content.max_delay ? right - 4 : width;
 
-    std::vector<Row> left;
-    if (quenched)
-        append(left, composer.say("quench.medium", composer.strong(), 0, room, {{"medium", content.quench_medium}}));
-    if (!content.cooling.isEmpty())
-        append(left, composer.say("quench.cooling", quenched ? composer.body() : composer.strong(), 0, room,
-                                  {{"cooling", content.cooling}}));
-    append(left, composer.list(content.medium_limits, composer.body(), 0, room));
     std::vector<Row> rows;
-    if (content.max_delay) {
-        std::vector<Row> delay = composer.say("quench.within", composer.caption(), 0, 36);
-        append(delay, composer.typesetter.paragraph(words.number(*content.max_delay), composer.value(), 0, 36));
-        rows = composer.beside(std::move(left), delay, right);
-    } else {
-        rows = std::move(left);
-    }
+    if (quenched)
+        append(rows, composer.say("quench.medium", composer.strong(), 0, width, {{"medium", content.quench_medium}}));
+    if (!content.cooling.isEmpty())
+        append(rows, composer.say("quench.cooling", quenched ? composer.body() : composer.strong(), 0, width,
+                                  {{"cooling", content.cooling}}));
+    append(rows, composer.list(content.medium_limits, composer.body(), 0, width));
     rows.push_back(space(0.8));
     const QString unit = content.setpoint.controller.unit;
+    std::vector<FillIn> boxes = {{composer.both("quench.box_out"), Hint::clock, ""},
+                                 {composer.both("quench.box_cold"), Hint::clock, ""},
+                                 {composer.both("quench.box_initials"), Hint::nothing, ""}};
     if (quenched)
-        rows.push_back(composer.boxes({{composer.both("quench.box_door"), Hint::clockSeconds, ""},
-                                       {composer.both("quench.box_under"), Hint::clockSeconds, ""},
-                                       {composer.both("quench.box_start"), Hint::nothing, unit},
-                                       {composer.both("quench.box_peak"), Hint::nothing, unit},
-                                       {composer.both("quench.box_end"), Hint::nothing, unit},
-                                       {composer.both("quench.box_initials"), Hint::nothing, ""}},
-                                      0, width));
-    else
-        rows.push_back(composer.boxes({{composer.both("quench.box_out"), Hint::clock, ""},
-                                       {composer.both("quench.box_cold"), Hint::clock, ""},
-                                       {composer.both("quench.box_initials"), Hint::nothing, ""}},
-                                      0, width));
+        boxes = {{composer.both("quench.box_door"), Hint::clockSeconds, ""},
+                 {composer.both("quench.box_under"), Hint::clockSeconds, ""},
+                 {composer.both("quench.box_start"), Hint::nothing, unit},
+                 {composer.both("quench.box_peak"), Hint::nothing, unit},
+                 {composer.both("quench.box_end"), Hint::nothing, unit}};
+    rows.push_back(
+        content.max_delay
+            ? valueAndBoxes(composer, {composer.both("quench.within"), words.number(*content.max_delay)}, boxes)
+            : composer.boxes(boxes, 0, width));
     return Section{composer.both(quenched ? "quench.heading" : "quench.heading_cool"), 1, false, false, rows, false};
 }
 
 std::optional<Section> afterSection(const Composer& composer) {
     const SheetContent& content = composer.content;
-    const double width = composer.content_width, right = width * 0.62;
-    std::vector<Row> left;
+    const double width = composer.content_width;
+    std::vector<Row> rows;
     if (!content.next_step.isEmpty())
-        append(left, composer.say("after.next", composer.bold(), 0, right - 4, {{"step", content.next_step}}));
+        append(rows, composer.say("after.next", composer.bold(), 0, width, {{"step", content.next_step}}));
     for (const QString& check : content.checks)
-        append(left, composer.say("after.check", composer.body(), 0, right - 4, {{"check", check}}));
-    const Row chart = composer.boxes({{composer.both("after.chart"), Hint::nothing, ""}}, 0, width - right);
-    return Section{
-        composer.both("after.heading"), 1, false, false, composer.beside(std::move(left), {chart}, right), false};
+        append(rows, composer.say("after.check", composer.body(), 0, width, {{"check", check}}));
+    if (rows.empty()) return {};
+    return Section{composer.both("after.heading"), 1, false, false, rows, false};
 }
 
 }  // namespace soak
