@@ -137,14 +137,26 @@ Eigen::VectorXd Alloy::Inside::amountsOf(const PhaseSet& set) const {
     return a;
 }
 
+const LabelRule* Alloy::Inside::heatingRuleOf(const PhaseSet& set) const {
+    const std::string& phase = nameOf(set.phase);
+    const LabelRule* rule = heatingRule(*data, phase);
+    const bool plain =
+        rule && labelOf(*data, *system, set) == data->phases[static_cast<size_t>(data->phaseIndex(phase))].label;
+    return plain ? rule : nullptr;
+}
+
+bool Alloy::Inside::namesOnHeating(const LabelRule& rule, const Point& point) const {
+    return std::none_of(point.sets.begin(), point.sets.end(), [&](const PhaseSet& set) {
+        const std::string& label = labelOf(*data, *system, set);
+        return std::find(rule.unless_beside.begin(), rule.unless_beside.end(), label) != rule.unless_beside.end();
+    });
+}
+
 std::vector<std::string> Alloy::Inside::labelsOf(const Point& point, bool onHeating) const {
     std::vector<std::string> labels;
     for (const PhaseSet& set : point.sets) {
-        const std::string& phase = nameOf(set.phase);
-        const std::string& label = labelOf(*data, *system, set);
-        const std::string& heated = labelOnHeating(*data, phase);
-        const bool plain = label == data->phases[static_cast<size_t>(data->phaseIndex(phase))].label;
-        labels.push_back(onHeating && plain && !heated.empty() ? heated : label);
+        const LabelRule* rule = onHeating ? heatingRuleOf(set) : nullptr;
+        labels.push_back(rule ? rule->label : labelOf(*data, *system, set));
     }
     return labels;
 }
@@ -203,33 +215,29 @@ State Alloy::Inside::toState(const Point& point, bool onHeating) const {
 
 /// Looks down from the point for a temperature at which the set is absent: then it formed on heating.
 bool Alloy::Inside::formsOnHeating(const Point& point) {
-    const auto present = [&](const Point& p) {
-        for (const PhaseSet& set : p.sets) {
-            const std::string& phase = nameOf(set.phase);
-            if (!labelOnHeating(*data, phase).empty() &&
-                labelOf(*data, *system, set) == data->phases[static_cast<size_t>(data->phaseIndex(phase))].label)
-                return true;
-        }
-        return false;
+    const auto ruleAt = [&](const Point& p) {
+        const LabelRule* rule = nullptr;
+        for (const PhaseSet& set : p.sets)
+            if (!rule) rule = heatingRuleOf(set);
+        return rule;
     };
     constexpr double kLowest = 773.15, kStep = 25;  // below 500 C the metal's matrix no longer changes in a treatment
     const double T = point.T;
-    if (!present(point)) {
-        absentAt = std::max(absentAt, T);
-        return false;
-    }
+    const LabelRule* rule = ruleAt(point);
+    if (!rule) return false;
     if (absentAt > 0 && T > absentAt) return true;
     if (T <= presentUpTo) return false;
     const Point kept = point;
     for (double below = T - kStep; below > std::max(kLowest, presentUpTo); below -= kStep) {
         if (!solver->solve(below)) break;
-        if (present(solver->point())) continue;
-        absentAt = below;
+        const Point& p = solver->point();
+        if (ruleAt(p)) continue;
+        if (namesOnHeating(*rule, p)) absentAt = below;
         break;
     }
     solver->startFrom(kept);
     if (absentAt > 0 && T > absentAt) return true;
-    presentUpTo = T;
+    presentUpTo = std::max(presentUpTo, T);
     return false;
 }
 

@@ -31,6 +31,10 @@ struct Alloy::Inside {
     State toState(const Point& point, bool onHeating) const;
     /// True when the sets that have a heating name form from another matrix phase below T.
     bool formsOnHeating(const Point& point);
+    /// The rule that would rename this set on heating, or nullptr when it is not of that kind.
+    const LabelRule* heatingRuleOf(const PhaseSet& set) const;
+    /// True when none of the labels that keep the plain name stands beside.
+    bool namesOnHeating(const LabelRule& rule, const Point& point) const;
     std::map<std::string, double> perWt(const Eigen::VectorXd& dT_db) const;
     const std::string& nameOf(int phase) const;
     /// Moles of atoms of each element in one formula unit.

@@ -244,6 +244,7 @@ private:
                     if (!element.empty() && data_.elementIndex(element) < 0)
                         return wrong(file, "rule " + rule.label, element + " is not an element of this set");
                 rule.from_matrix_on_heating = entry["from_matrix_on_heating"].value_or(false);
+                rule.unless_beside = texts(entry["unless_beside"]);
                 data_.labels.push_back(std::move(rule));
             }
         return Done{};

@@ -33,6 +33,7 @@ struct LabelRule {
     std::string main;                         ///< the metal with the largest content
     std::string exceeds_this, exceeds_other;  ///< mole fraction of the first exceeds that of the second
     bool from_matrix_on_heating = false;      ///< the set forms from the other matrix phase on heating (delta ferrite)
+    std::vector<std::string> unless_beside;   ///< labels whose presence where it forms keeps the plain name
 };
 
 struct PhaseData {

@@ -42,11 +42,10 @@ const std::string& labelOf(const DataSet& data, const System& system, const Phas
     return phase.label;
 }
 
-const std::string& labelOnHeating(const DataSet& data, const std::string& phase) {
-    static const std::string none;
+const LabelRule* heatingRule(const DataSet& data, const std::string& phase) {
     for (const LabelRule& rule : data.labels)
-        if (rule.from_matrix_on_heating && rule.phase == phase) return rule.label;
-    return none;
+        if (rule.from_matrix_on_heating && rule.phase == phase) return &rule;
+    return nullptr;
 }
 
 }  // namespace soak

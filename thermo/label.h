@@ -11,7 +11,7 @@ namespace soak {
 /// Names that depend on how the metal came there (delta ferrite) are given by the sweep.
 const std::string& labelOf(const DataSet& data, const System& system, const PhaseSet& set);
 
-/// The name that this label takes when the set forms from another matrix phase on heating; empty when it has none.
-const std::string& labelOnHeating(const DataSet& data, const std::string& phase);
+/// The rule for sets of this phase that form from another matrix phase on heating, or nullptr when there is none.
+const LabelRule* heatingRule(const DataSet& data, const std::string& phase);
 
 }  // namespace soak

@@ -141,8 +141,12 @@ private:
 
     bool stands(Point& p, double low, double high) {
         if (p.T < low - kResolution || p.T > high + kResolution) return false;
-        for (const PhaseSet& set : p.sets)
+        Eigen::VectorXd lack = in_.solver->composition();
+        for (const PhaseSet& set : p.sets) {
             if (set.n < -1e-8) return false;
+            lack -= set.n * in_.amountsOf(set);
+        }
+        if (lack.cwiseAbs().maxCoeff() > 1e-9) return false;
         return in_.solver->prove(p, false) <= kProof * kGas * p.T;
     }
 
@@ -204,29 +208,28 @@ Result<Sweep> Alloy::sweep(double from_K, double to_K) {
     bool heated = in.formsOnHeating(walk.points.front());
     Sweep sweep;
     size_t next = 0;
-    const auto passEvents = [&](double T) {
+    const auto passEvents = [&](double T, const Point& after) {
         for (; next < walk.events.size() && walk.events[next].T <= T; ++next) {
             const Found& found = walk.events[next];
-            const std::string& heatedName = labelOnHeating(*in.data, found.phase);
-            const bool plain =
-                !heatedName.empty() &&
-                found.label == in.data->phases[static_cast<size_t>(in.data->phaseIndex(found.phase))].label;
-            if (plain && found.kind == EventKind::appears) heated = true;
+            const LabelRule* rule = heatingRule(*in.data, found.phase);
+            if (rule && found.label != in.data->phases[static_cast<size_t>(in.data->phaseIndex(found.phase))].label)
+                rule = nullptr;
+            if (rule && found.kind == EventKind::appears) heated = in.namesOnHeating(*rule, after);
             Event event;
             event.kind = found.kind;
             event.phase = found.phase;
-            event.label = plain && heated ? heatedName : found.label;
+            event.label = rule && heated ? rule->label : found.label;
             event.temperature_K = found.T;
             event.K_per_wt = in.perWt(found.dT_db);
-            if (plain && found.kind == EventKind::vanishes) heated = false;
+            if (rule && found.kind == EventKind::vanishes) heated = false;
             sweep.events.push_back(std::move(event));
         }
     };
     for (const Point& point : walk.points) {
-        passEvents(point.T);
+        passEvents(point.T, point);
         sweep.states.push_back(in.toState(point, heated));
     }
-    passEvents(1e9);
+    passEvents(1e9, walk.points.back());
     return sweep;
 }
 
