@@ -57,9 +57,9 @@ public:
 
 private:
     std::vector<Row> heading(const Section& section, bool continued) const {
-        const double width = composer_.templates.layout.gutter_mm - 3;
+        const double width = composer_.templates.layout.gutter_mm - 1;
         if (section.heading.isEmpty()) return {};
-        const QString number = section.step > 0 ? QString::number(section.step) + "  " : QString();
+        const QString number = section.step > 0 ? QString::number(section.step) + " " : QString();
         std::vector<Row> rows =
             composer_.typesetter.paragraph(number + section.heading.first(), composer_.bold(), 0, width);
         for (const QString& second : section.heading.mid(1))

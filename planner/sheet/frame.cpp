@@ -104,8 +104,10 @@ std::vector<Row> firstHead(const Composer& composer) {
     }
     const auto unreviewed = [&](const Wording& wording) {
         if (!wording.isDraft()) return;
+        QStringList texts{composer.text("page.wording_draft"), wording.text("page.wording_draft")};
+        texts.removeDuplicates();
         rows.push_back(space(1));
-        append(rows, banner(composer, wording.language() + ": " + wording.text("page.wording_draft")));
+        append(rows, banner(composer, wording.language() + ": " + texts.join(" / ")));
     };
     unreviewed(composer.words());
     if (composer.templates.second) unreviewed(*composer.templates.second);
