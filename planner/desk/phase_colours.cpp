@@ -42,15 +42,15 @@ constexpr Row kTable[] = {
     // nitrides and MX: bluish greens
     {"mx", "#009e73", "#1fb48a", Hatch::dots},
     {"mn", "#33b18f", "#33b18f", Hatch::upright},
-    {"cr2n", "#4fbf9f", "#4fbf9f", Hatch::rising},
+    {"cr2n", "#4fbf9f", "#4fbf9f", Hatch::level},
     {"aln", "#8fd6c1", "#8fd6c1", Hatch::dots},
     {"z", "#007a5a", "#2a9d7c", Hatch::level},
     {"fe4n", "#b5e3d5", "#9fd9c8", Hatch::falling},
     // intermetallics: vermilion, always hatched
     {"sigma", "#d55e00", "#e2701a", Hatch::rising},
-    {"chi", "#e58441", "#e58441", Hatch::falling},
+    {"chi", "#e58441", "#e58441", Hatch::upright},
     {"laves", "#c24f00", "#d2661b", Hatch::crossed},
-    {"mu", "#efad82", "#efad82", Hatch::upright},
+    {"mu", "#efad82", "#efad82", Hatch::falling},
     {"r", "#f3c3a3", "#e7b08a", Hatch::level},
     {"ni3ti", "#da7a36", "#da7a36", Hatch::dots},
     // copper and graphite: yellow-browns

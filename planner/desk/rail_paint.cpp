@@ -146,10 +146,11 @@ void Rail::paintPhaseNames(QPainter& painter, const QRectF& box, const Spans& sp
         if (best <= 0) continue;
         const QColor colour = phaseLook(label).colour(dark);
         const QRectF place(best_left, box.top() + double(best_row) + 1, wide, double(tall));
+        const bool hatched = phaseLook(label).hatch != Hatch::none;  // then the name needs a quiet ground of its own
         painter.setPen(Qt::NoPen);
-        painter.setBrush(faded(colour, 0.85));
+        painter.setBrush(hatched ? colour : QColor(Qt::transparent));
         painter.drawRoundedRect(place, 3, 3);
-        painter.setPen(readableOn(colour));
+        painter.setPen(hatched ? readableOn(colour) : faded(palette().color(QPalette::Text), 0.8));
         painter.drawText(place, Qt::AlignCenter, label);
     }
     painter.setFont(font());

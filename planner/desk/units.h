@@ -2,6 +2,7 @@
 #pragma once
 #include <QString>
 
+#include "planner/core/units_text.h"
 #include "planner/core/window.h"
 
 namespace soak::desk {
@@ -20,8 +21,6 @@ struct Units {
     QString signedDifference(double kelvins) const;
 };
 
-/// A number with `decimals`, a true minus sign and no locale.
-QString number(double value, int decimals = 0);
 /// A share, "0.31 %": the digits grow as it gets smaller, never more than two.
 QString percent(double fraction);
 /// What is shown for a limit: floors rounded up, ceilings down, in the unit that is shown.
