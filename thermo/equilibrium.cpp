@@ -330,6 +330,7 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
         if (p.T < 200 || p.T > 6000) return false;
         for (size_t s = p.sets.size(); s-- > 0;)
             if (p.sets[s].n < 0 && !condition && p.sets.size() > 1) {
+                p.minima.push_back({p.sets[s], 0});  // it may come back: the proof watches it from here on
                 p.sets.erase(p.sets.begin() + static_cast<long>(s));
                 negative.erase(negative.begin() + static_cast<long>(s));
             }
@@ -397,7 +398,8 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
                     other.height < m.height + 1e-6)
                     return;
         }
-        if (!local.shifted && decrement < 1e-9) {
+        // Far above the plane the height need not be exact; near it, to the last digit.
+        if (!local.shifted && decrement < std::max(1e-9, 1e-4 * (m.height - 0.01 * kGas * T))) {
             move(model, dz, 1, y);
             m.height -= decrement / 2;
             break;
@@ -433,6 +435,8 @@ double Solver::prove(Point& p, bool thorough) {
     std::vector<double> best;
     std::vector<int> bestAt;
     double proof = 0;
+    if (thorough || p.settled.empty())
+        p.settled.assign(static_cast<size_t>(samples.firstKind.back()), std::numeric_limits<double>::infinity());
     for (size_t f = 0; f < models.size(); ++f) {
         if (!allowed_[f]) continue;
         const int first = samples.first[f], count = samples.first[f + 1] - first;
@@ -451,46 +455,44 @@ double Solver::prove(Point& p, bool thorough) {
         }
         const size_t firstFound = found.size();
         double low = std::numeric_limits<double>::infinity();
+        // Returns false when the search ends in a place that is known already.
         const auto consider = [&](Minimum m) {
             descend(m, p.T, p.mu, found, p.sets);
             for (const PhaseSet& set : p.sets)
-                if (set.phase == m.set.phase && distance2(set.y.data(), m.set.y.data(), models[f].size) < 1e-3) return;
+                if (set.phase == m.set.phase && distance2(set.y.data(), m.set.y.data(), models[f].size) < 2e-3)
+                    return false;
             for (size_t k = firstFound; k < found.size(); ++k)
                 if (distance2(found[k].set.y.data(), m.set.y.data(), models[f].size) < 1e-3) {
                     if (m.height < found[k].height) found[k] = m;
-                    return;
+                    return false;
                 }
             found.push_back(m);
+            return true;
         };
         for (const Minimum& m : p.minima)
             if (m.set.phase == static_cast<int>(f)) consider(m);
-        best.assign(static_cast<size_t>(samples.kinds[f]), std::numeric_limits<double>::infinity());
+        best.assign(static_cast<size_t>(samples.firstKind[f + 1] - samples.firstKind[f]),
+                    std::numeric_limits<double>::infinity());
         bestAt.assign(best.size(), -1);
         for (int k = first; k < first + count; ++k) {
             const auto kind = static_cast<size_t>(samples.kind[static_cast<size_t>(k)]);
             if (height_[k] < best[kind]) best[kind] = height_[k], bestAt[kind] = k;
         }
         order.clear();
+        double* settled = p.settled.data() + samples.firstKind[f];
         const double reach = (thorough ? 3.0 : 1.0) * RT * most;
         for (size_t kind = 0; kind < best.size(); ++kind)
-            if (bestAt[kind] >= 0 && best[kind] < reach) order.push_back({best[kind], bestAt[kind]});
+            if (bestAt[kind] >= 0 && best[kind] < reach && (thorough || best[kind] < settled[kind] - 0.15 * RT * most))
+                order.push_back({best[kind], bestAt[kind]});
         std::sort(order.begin(), order.end());
-        const auto taken = [&](int kind) {
-            for (const PhaseSet& set : p.sets)
-                if (set.phase == static_cast<int>(f) && system_->kindOf(static_cast<int>(f), set.y.data()) == kind)
-                    return true;
-            for (size_t k = firstFound; k < found.size(); ++k)
-                if (system_->kindOf(static_cast<int>(f), found[k].set.y.data()) == kind) return true;
-            return false;
-        };
         size_t starts = 0;
         for (const auto& [height, at] : order) {
-            if (!thorough && taken(samples.kind[static_cast<size_t>(at)])) continue;
-            if (starts++ >= (thorough ? 12u : 3u)) break;
+            if (starts++ >= (thorough ? 12u : 4u)) break;
             Minimum m;
             m.set.phase = static_cast<int>(f);
             std::copy(samples.site(at), samples.site(at) + models[f].size, m.set.y.begin());
             consider(m);
+            settled[samples.kind[static_cast<size_t>(at)]] = height;
         }
         for (size_t k = firstFound; k < found.size(); ++k) low = std::min(low, found[k].height);
         for (const PhaseSet& set : p.sets)
@@ -681,6 +683,7 @@ bool Solver::exchange(Point& p, const std::vector<Minimum>& entering) {
     for (PhaseSet& set : columns) complete(set, p.T);
     Hull hull;
     if (!solveHull(hull, columns, false)) return false;
+    for (const PhaseSet& set : columns) p.minima.push_back({set, 0});  // what loses its place is watched further
     p.sets = setsOf(hull, columns, 0);
     p.mu = hull.mu;
     return !p.sets.empty();

@@ -26,15 +26,18 @@ struct Minimum {
     double height = 0;  ///< G - mu a, J per mole of formula unit; negative = the phase wants to form
 };
 
-/// One solved state. `minima` and `lowest` speed up the next state near it; they carry no part of the answer.
+/// One solved state. What stands below `proof` speeds up the next state near it; it carries no part of the answer.
 struct Point {
     double T = 0;
     std::vector<PhaseSet> sets;
-    Eigen::VectorXd mu;            ///< J per mole of atoms, in the system's order of elements
-    double gibbs = 0;              ///< J per mole of atoms
-    double proof = 0;              ///< largest driving force left, J per mole of atoms
-    std::vector<Minimum> minima;   ///< of phases and sets that are not stable
-    std::vector<double> lowest;    ///< per phase: lower bound of its height, J per mole of formula unit
+    Eigen::VectorXd mu;           ///< J per mole of atoms, in the system's order of elements
+    double gibbs = 0;             ///< J per mole of atoms
+    double proof = 0;             ///< largest driving force left, J per mole of atoms
+    std::vector<Minimum> minima;  ///< of phases and sets that are not stable
+    std::vector<double> lowest;   ///< per phase: lower bound of its height, J per mole of formula unit
+    /// Per class of samples (System::Samples::kind, all phases end to end): the height of its best sample when a search
+    /// from it last ended in a place that was known already.
+    std::vector<double> settled;
     Eigen::VectorXd sampleHeight;  ///< heights of the samples at this state
 };
 

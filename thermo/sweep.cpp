@@ -67,18 +67,22 @@ private:
         return list;
     }
 
-    /// A phase may come and go between two states: looks closer when one absent at both ends comes near the plane.
+    /// A phase may come and go between two states: looks closer where the parabola through its last three heights above
+    /// the tangent plane dips to the plane.
     bool mayHide(const Point& a, const Point& b) const {
-        if (b.T - a.T < 4 || a.lowest.size() != b.lowest.size()) return false;
+        if (points.size() < 2 || &a != &points.back()) return false;
+        const Point& before = points[points.size() - 2];
         const auto& samples = in_.system->samples();
         for (size_t f = 0; f < a.lowest.size(); ++f) {
-            const auto holds = [f](const Point& p) {
-                return std::any_of(p.sets.begin(), p.sets.end(),
-                                   [f](const PhaseSet& s) { return s.phase == static_cast<int>(f); });
-            };
-            if (!std::isfinite(a.lowest[f]) || holds(a) || holds(b)) continue;
-            const double near = 0.003 * kGas * a.T * samples.atoms[samples.first[f]];
-            if (a.lowest[f] < near && b.lowest[f] < near) return true;
+            const double near = 0.02 * kGas * a.T * samples.atoms[samples.first[f]];
+            const double h0 = before.lowest[f], h1 = a.lowest[f], h2 = b.lowest[f];
+            if (!(h0 > 0 && h1 > 0 && h2 > 0 && h1 < near && h2 < near)) continue;
+            const double slope = (h2 - h1) / (b.T - a.T), earlier = (h1 - h0) / (a.T - before.T);
+            const double curvature = (slope - earlier) / (b.T - before.T);
+            if (curvature <= 0) continue;
+            const double atA = slope - curvature * (b.T - a.T), lowestAt = -atA / (2 * curvature);
+            if (lowestAt > 0 && lowestAt < b.T - a.T && h1 - atA * atA / (4 * curvature) < 0.1 * std::min(h1, h2))
+                return true;
         }
         return false;
     }

@@ -224,13 +224,14 @@ void System::makeSamples() {
     std::mt19937_64 random(20250402);
     std::exponential_distribution<double> exponential(1.0);
     std::vector<std::vector<double>> points;
+    samples_.firstKind.push_back(0);
     for (size_t p = 0; p < phases_.size(); ++p) {
         const PhaseModel& model = phases_[p];
         samples_.first.push_back(samples_.count());
         int kinds = 1;
         for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s)
             kinds *= model.start[s + 1] - model.start[s];
-        samples_.kinds.push_back(kinds);
+        samples_.firstKind.push_back(samples_.firstKind.back() + kinds);
         const auto add = [&](const std::vector<double>& y) {
             samples_.phase.push_back(static_cast<int>(p));
             samples_.kind.push_back(kindOf(static_cast<int>(p), y.data()));

@@ -40,7 +40,7 @@ public:
         std::vector<int> offset;       ///< of the sample's site fractions in `y`
         std::vector<double> y;
         std::vector<int> first;        ///< first sample of each phase, and one past the last: phases + 1
-        std::vector<int> kinds;        ///< number of classes of each phase
+        std::vector<int> firstKind;    ///< first class of each phase, and one past the last: phases + 1
         std::vector<double> Tc, beta;  ///< magnetism at the sample, 0 where there is none
         int count() const { return static_cast<int>(phase.size()); }
         const double* site(int sample) const { return y.data() + offset[static_cast<size_t>(sample)]; }
