@@ -130,11 +130,11 @@ std::vector<CycleLimit> limitsOf(const Job& job) {
     return limits;
 }
 
-WindowAnswer begin(const Job& job, const Grade* row) {
+WindowAnswer begin(const Job& job, const QString& family) {
     WindowAnswer answer;
     answer.heat = job.heat.number;
     answer.grade = job.heat.grade;
-    answer.family = !job.family.isEmpty() ? job.family : row ? row->family : QString();
+    answer.family = family;
     answer.cycle = job.cycle.name;
     answer.kind = job.cycle.kind;
     answer.furnace = job.furnace.id;
@@ -190,6 +190,12 @@ void sayEvidence(WindowAnswer& answer) {
 
 }  // namespace
 
+QString familyOf(const Job& job, const Shelf& shelf) {
+    if (!job.family.isEmpty()) return job.family;
+    const Grade* row = mainRow(job.heat, shelf.grades);
+    return row ? row->family : QString();
+}
+
 bool isJudged(const QString& cycle_kind) {
     static const QStringList kinds{"solution-anneal", "harden", "full-anneal", "normalise"};
     return kinds.contains(cycle_kind);
@@ -231,7 +237,7 @@ Result<AlloyReport*> ReportCache::of(const std::shared_ptr<const DataSet>& data,
 
 Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cache) {
     const Grade* row = mainRow(job.heat, shelf.grades);
-    WindowAnswer answer = begin(job, row);
+    WindowAnswer answer = begin(job, familyOf(job, shelf));
     answer.grade_check = checkGrade(job.heat, shelf.grades);
     if (row) answer.published = publishedRanges(shelf, *row, job.cycle.kind);
     if (!isJudged(job.cycle.kind)) return notComputed(answer, "this kind is not judged yet (" + job.cycle.kind + ")");

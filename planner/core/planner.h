@@ -49,6 +49,9 @@ Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cach
 /// computed.
 Result<WindowAnswer> atSetpoint(WindowAnswer answer, const Furnace& furnace, const ShopRules& rules, double setpoint_C);
 
+/// The family that the answer will use: the job's own, else the grade's; empty when neither is known.
+QString familyOf(const Job& job, const Shelf& shelf);
+
 /// Kinds of cycle that are judged end to end; every other kind answers "this kind is not judged yet".
 bool isJudged(const QString& cycle_kind);
 

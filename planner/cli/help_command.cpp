@@ -1,0 +1,34 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "commands.h"
+#include "output.h"
+
+namespace soak::cli {
+
+Result<int> helpCommand(const QStringList&) {
+    print(QString(R"(soakwright: which furnace setpoint suits this heat, and why
+
+  soakwright state  --wt LIST --at C            the equilibrium at one temperature
+  soakwright sweep  --wt LIST --from C --to C   the equilibria between two, with every event
+      --with LIST, --without LIST               phases let in (graphite, gas) or left out
+  soakwright window --wt LIST --family NAME     limits, window and verdict of a typed chemistry
+      --grade NAME, --kind NAME, --form NAME    grade to check against, treatment, product form
+  soakwright window --heat ID --cycle NAME --furnace NAME --store FILE
+      --setpoint C, --band-rule "added up"|"root of squares"
+  soakwright triage --csv FILE --store FILE     every heat of a delivery, worst first
+      --furnace NAME, --threads N
+  soakwright sheet  --store FILE --heat ID --cycle NAME --furnace NAME --pdf FILE
+      --setpoint C, --paper a4|letter, --issue NAME   without --issue a draft is written
+  soakwright store new FILE [--demo]            a new store, empty or with the demonstration shop
+  soakwright help | --version
+
+  LIST is C=0.05,Cr=18,Ni=10 in wt%, with commas or semicolons; Fe=bal names the balance element.
+  --set NAME chooses the data set; else the balance element does.   --date 2025-04-02 is "today".
+  --json prints the same answer for programs. Temperatures are in °C, differences in K.
+
+  Exit status: 0 answered; 1 triage found rows that are outside, without window or not computed;
+  2 the question is wrong (units, elements, names, temperatures); 3 anything else failed.
+)"));
+    return 0;
+}
+
+}  // namespace soak::cli

@@ -1,0 +1,88 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include "arguments.h"
+#include "commands.h"
+#include "output.h"
+#include "planner/core/sheet_issue.h"
+#include "planner/core/shop_floor.h"
+#include "planner/sheet/render.h"
+
+namespace soak::cli {
+namespace {
+
+const QStringList kValued{"store",    "heat", "cycle", "furnace", "pdf",
+                          "setpoint", "date", "paper", "issue",   "band-rule"};
+
+Result<Paper> paperIn(const Arguments& arguments) {
+    const QString paper = arguments.text("paper").toLower();
+    if (paper.isEmpty() || paper == "a4") return Paper::a4;
+    if (paper == "letter") return Paper::letter;
+    return Error{Fault::input, "--paper: \"" + paper.toStdString() + "\" is neither a4 nor letter", {}, {}};
+}
+
+Result<Job> jobIn(const Arguments& arguments, const Store& store) {
+    const auto heat = arguments.required("heat"), cycle = arguments.required("cycle"),
+               furnace = arguments.required("furnace");
+    if (!heat) return heat.error();
+    if (!cycle) return cycle.error();
+    if (!furnace) return furnace.error();
+    auto job = jobFrom(store, heat.value(), cycle.value(), furnace.value());
+    if (!job) return job;
+    const auto setpoint_C = arguments.numberIfGiven("setpoint");
+    if (!setpoint_C) return setpoint_C.error();
+    job.value().setpoint_C = setpoint_C.value();
+    return job;
+}
+
+}  // namespace
+
+Result<int> sheetCommand(const QStringList& given) {
+    const auto read = readArguments(given, kValued, {"json"});
+    if (!read) return read.error();
+    const Arguments& arguments = read.value();
+    const auto path = arguments.required("store"), pdf = arguments.required("pdf");
+    if (!path) return path.error();
+    if (!pdf) return pdf.error();
+    const auto paper = paperIn(arguments);
+    if (!paper) return paper.error();
+    const auto date = arguments.dateIfGiven("date");
+    if (!date) return date.error();
+
+    const QString released_by = arguments.text("issue");
+    auto store = Store::open(path.value(), released_by.isEmpty() ? Access::read : Access::write);
+    if (!store) return std::move(store).error();
+    auto shelf = shelfFrom(store.value(), date.value());
+    if (!shelf) return std::move(shelf).error();
+    if (!arguments.text("band-rule").isEmpty()) shelf.value().rules.band_rule = arguments.text("band-rule");
+    const auto job = jobIn(arguments, store.value());
+    if (!job) return job.error();
+
+    ReportCache cache;
+    const auto answer = judge(job.value(), shelf.value(), cache);
+    if (!answer) return answer.error();
+    const auto content = released_by.isEmpty()
+                             ? draftSheet(store.value(), answer.value(), job.value(), shelf.value().rules)
+                             : issueSheet(store.value(), answer.value(), job.value(), shelf.value().rules, released_by);
+    if (!content) return content.error();
+    SheetOptions options;
+    options.paper = paper.value();
+    QStringList notices;
+    const auto rendered = renderPdf(content.value(), options, pdf.value(), &notices);
+    if (!rendered) return rendered.error();
+
+    const SheetContent& sheet = content.value();
+    if (arguments.has("json"))
+        print(Json{{"pdf", pdf.value().toStdString()},
+                   {"draft", sheet.draft},
+                   {"number", sheet.number.toStdString()},
+                   {"revision", sheet.revision.toStdString()},
+                   {"verdict", word(answer.value().verdict).toStdString()},
+                   {"draft_reasons", sheet.draft_reasons.join("; ").toStdString()}});
+    else
+        print(QString("%1 written to %2. %3\n")
+                  .arg(sheet.draft ? QString("Draft") : "Sheet " + sheet.number + " rev " + sheet.revision, pdf.value(),
+                       answer.value().reason));
+    for (const QString& notice : notices) print(notice + "\n");
+    return 0;
+}
+
+}  // namespace soak::cli
