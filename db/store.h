@@ -75,6 +75,14 @@ public:
     /// The newest revision, or the one named: ("2025-0001", "A").
     Result<Sheet> sheet(const QString& number, const QString& revision = {}) const;
 
+    // Care.
+    /// What is wrong with the store, in words; empty when it is sound: pages, references, every sheet's hash.
+    Result<QStringList> check() const;
+    /// A complete, checked copy in one file, made while others go on writing. Refuses a path that exists.
+    Result<Done> backup(const QString& path) const;
+    /// A new store at `path` from a sound backup. Refuses a path that exists: a store in use is never overwritten.
+    static Result<Done> restore(const QString& backup, const QString& path);
+
 private:
     Store(QString path, QString connection) : path_(std::move(path)), connection_(std::move(connection)) {}
     void close();

@@ -328,6 +328,22 @@ TEST_CASE("a damaged store is not mistaken for an empty one", "[store]") {
     CHECK_THAT(words, Catch::Contains("the file is damaged") && Catch::Contains("restore the last backup"));
 }
 
+TEST_CASE("ten thousand heats are stored and read in one go", "[store]") {
+    Place place;
+    Store store = must(Store::create(place.path));
+    std::vector<Heat> many;
+    for (int i = 0; i < 10000; ++i) {
+        many.push_back(heatNamed(QString("%1").arg(i, 6, 10, QChar('0'))));
+        for (const char* element : {"Si", "Mn", "P", "S", "Cr", "Ni", "Mo", "V", "W", "Ti", "Al", "Cu", "Co"})
+            many.back().analysis[element] = {"0.5", 0.5, false, 0.1, ""};
+    }
+    CHECK(must(store.storeHeats(many, "f", kDay)) == 10000);
+    const std::vector<Heat> back = must(store.heats());
+    REQUIRE(back.size() == 10000);
+    CHECK(back.back().number == "009999");
+    CHECK(back.back().analysis.size() == 16);
+}
+
 TEST_CASE("two stores of one thread do not disturb each other", "[store]") {
     Place one, two;
     Store a = must(Store::create(one.path)), b = must(Store::create(two.path));
