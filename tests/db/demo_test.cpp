@@ -91,7 +91,7 @@ TEST_CASE("cycles carry their limits, each with its reason and source", "[demo]"
     const Cycle stabilised = must(shop().cycle("SA-321"));
     CHECK(limit(stabilised, "fraction", "MX")->low);  // the stabiliser's carbide must stay
     CHECK_FALSE(limit(stabilised, "dissolved", "MX"));
-    CHECK(limit(must(shop().cycle("H-410")), "not_yet_formed", "delta ferrite"));
+    CHECK(limit(must(shop().cycle("N-91")), "not_yet_formed", "delta ferrite"));
     CHECK(limit(must(shop().cycle("H-M2")), "below_solidus")->margin_K == 15);
 }
 
