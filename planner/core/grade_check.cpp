@@ -227,6 +227,16 @@ Analysis scaled(Analysis analysis, const std::string& element, double factor) {
     return analysis;
 }
 
+/// More than twice off: a shifted point would explain it, a melt that ran a little high would not. An element that the
+/// row does not name is an addition, not a slip.
+bool isFarOut(double value, const Grade& row, const std::string& element) {
+    const auto at = row.limits.find(element);
+    if (at == row.limits.end()) return false;
+    const bool far_above = at->second.max_wt && value > 2 * *at->second.max_wt;
+    const bool far_below = at->second.min_wt && value < *at->second.min_wt / 2;
+    return far_above || far_below;
+}
+
 /// One slip of the pen that would explain everything that is wrong: a shifted decimal point, two columns swapped.
 /// Only said, never done.
 std::vector<Finding> slips(const Analysis& analysis, const Grade& row, const RowCheck& check) {
@@ -235,13 +245,16 @@ std::vector<Finding> slips(const Analysis& analysis, const Grade& row, const Row
     for (const Finding& finding : check.findings)
         if (finding.fails) wrong << finding.element;
     for (const auto& [element, content] : analysis) {
-        if (!content.wt || !wrong.contains(symbolOf(element))) continue;
-        for (const double factor : {0.1, 10.0, 0.01})
-            if (const Analysis moved = scaled(analysis, element, factor); satisfies(moved, row))
-                found.push_back({symbolOf(element),
-                                 QString("%1 %2 would fit as %3: check the decimal point against the certificate")
-                                     .arg(symbolOf(element), printed(content), printed(moved.at(element))),
-                                 "suggestion", false});
+        if (!content.wt || !wrong.contains(symbolOf(element)) || !isFarOut(*content.wt, row, element)) continue;
+        for (const double factor : {0.1, 10.0, 0.01}) {
+            const Analysis moved = scaled(analysis, element, factor);
+            if (!satisfies(moved, row)) continue;
+            found.push_back({symbolOf(element),
+                             QString("%1 %2 would fit as %3: check the decimal point against the certificate")
+                                 .arg(symbolOf(element), printed(content), printed(moved.at(element))),
+                             "suggestion", false});
+            break;
+        }
     }
     for (auto first = analysis.begin(); first != analysis.end(); ++first)
         for (auto second = std::next(first); second != analysis.end(); ++second) {

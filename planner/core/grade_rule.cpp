@@ -19,8 +19,10 @@ public:
     std::optional<double> value() {
         const double result = sum();
         skipBlanks();
-        return ok_ && at_ == text_.size() ? std::optional(result) : std::nullopt;
+        ok_ = ok_ && at_ == text_.size();
+        return ok_ && !zero_divisor_ ? std::optional(result) : std::nullopt;
     }
+    bool readable() const { return ok_; }
     const QStringList& symbols() const { return symbols_; }
 
 private:
@@ -51,7 +53,7 @@ private:
                 total *= factor();
             } else if (take('/')) {
                 const double divisor = factor();
-                ok_ = ok_ && divisor != 0;
+                zero_divisor_ = zero_divisor_ || divisor == 0;
                 total /= divisor;
             } else {
                 return total;
@@ -83,7 +85,7 @@ private:
     const Amounts& amounts_;
     QStringList symbols_;
     qsizetype at_ = 0;
-    bool ok_ = true;
+    bool ok_ = true, zero_divisor_ = false;
 };
 
 struct Parts {
@@ -137,7 +139,9 @@ RuleOutcome applyRule(const QString& rule, const Analysis& analysis) {
         return outcome;
     }
     if (!left_value || !right_value) {
-        outcome.text = rule + ": cannot be evaluated";
+        const bool readable = left.readable() && right.readable();
+        if (readable) outcome.answer = Answer::cannot_say;
+        outcome.text = rule + (readable ? ": cannot be evaluated, division by zero" : ": cannot be read");
         return outcome;
     }
     outcome.left = *left_value;

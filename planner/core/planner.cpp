@@ -156,6 +156,8 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
     const DataSetFacts& known = facts(*data);
     sayWhatIsLeftOut(answer, job.heat.analysis, known);
     const auto limits = limitsOf(job);
+    const Chemistry chemistry = chemistryOf(job.heat.analysis, known);
+    answer.chemistry_wt = chemistry.wt;
 
     LimitContext context;
     context.analysis = &job.heat.analysis;
@@ -168,7 +170,7 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
         std::any_of(limits.begin(), limits.end(), [](const CycleLimit& one) { return isComputedKind(one.kind); });
     if (needs_physics && context.missing.isEmpty()) {
         const auto [from_C, to_C] = shelf.book.sweep_C.at(family.data_set);
-        auto report = cache.of(data, chemistryOf(job.heat.analysis, known), family.phases, from_C, to_C);
+        auto report = cache.of(data, chemistry, family.phases, from_C, to_C);
         if (report)
             context.report = report.value();
         else
@@ -183,9 +185,37 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
 }
 
 void sayEvidence(WindowAnswer& answer) {
+    QStringList thin;
     for (const auto* side : {&answer.floors, &answer.ceilings})
-        for (const Limit& limit : *side)
-            if (limit.temperature_C && !limit.remark.isEmpty()) answer.remarks << limit.cause + ": " + limit.remark;
+        for (const Limit& limit : *side) {
+            if (!limit.temperature_C || limit.remark.isEmpty()) continue;
+            if (limit.remark.startsWith("little evidence"))
+                thin << limit.cause;
+            else
+                answer.remarks << limit.cause + ": " + limit.remark;
+        }
+    thin.removeDuplicates();
+    if (!thin.isEmpty()) answer.remarks << "little evidence behind: " + listed(thin);
+}
+
+/// With one element missing: what the ends of its range in the grade would give. Never a verdict.
+void sayWhatIf(WindowAnswer& answer, const Job& job, const Shelf& shelf, const Family& family, const Grade& row,
+               ReportCache& cache) {
+    const DataSetFacts& known = facts(*shelf.data_sets.at(family.data_set));
+    const QStringList missing = missingElements(job.heat.analysis, family, &row, known);
+    if (missing.size() != 1) return;
+    const std::string element = missing.first().toStdString();
+    const auto range = row.limits.find(element);
+    if (range == row.limits.end() || !range->second.min_wt || !range->second.max_wt) return;
+    for (const double wt : {*range->second.min_wt, *range->second.max_wt}) {
+        Job supposed = job;
+        supposed.keep_sweep = false;
+        supposed.heat.analysis[element] = {QString::number(wt), wt, false, 0, "supposed"};
+        const auto outcome = judge(supposed, shelf, cache);
+        if (outcome)
+            answer.remarks << QString("what if %1 were %2 (supposed, no verdict): %3")
+                                  .arg(missing.first(), withUnit(wt, "%", 2), outcome.value().reason);
+    }
 }
 
 }  // namespace
@@ -262,6 +292,7 @@ Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cach
         decide(answer, job.furnace, shelf.rules);  // again: the reason may name the suggestion
     }
     sayEvidence(answer);
+    if (row && answer.verdict == Verdict::notComputed) sayWhatIf(answer, job, shelf, *family, *row, cache);
     return answer;
 }
 

@@ -33,19 +33,25 @@ std::vector<const Limit*> allLimits(const WindowAnswer& answer) {
 }
 
 /// "specification minimum 1040 °C" carries its temperature, "sigma dissolved + 20 K" gets it in brackets.
-QString causeWithTemperature(const Limit& limit) {
-    return limit.set && limit.margin_K == 0 ? limit.cause : limit.cause + " (" + shownTemperature(limit) + ")";
+QString causeWithTemperature(const Limit& limit, int decimals) {
+    if (limit.set && limit.margin_K == 0) return limit.cause;
+    return limit.cause + " (" + (decimals ? celsiusText(*limit.temperature_C, decimals) : shownTemperature(limit)) +
+           ")";
 }
 
-/// "the coldest metal, 1049 °C, stays 9 K above ..."; rounded so that the sentence never flatters.
+/// "the coldest metal, 1049 °C, stays 9 K above ..."; rounded so that the sentence never flatters. Within 2 K a decimal
+/// is shown, or the whole numbers would seem to contradict each other.
 QString clause(const Limit& limit, const Band& band) {
     const bool floor = limit.side == Side::floor;
     const double margin = *marginTo(limit, band);
-    const double metal_C = floor ? std::floor(band.low_C) : std::ceil(band.high_C);
+    const int decimals = std::abs(margin) < 2 ? 1 : 0;
+    const double unit = decimals ? 10 : 1;
+    const double metal_C = (floor ? std::floor(band.low_C * unit + 1e-6) : std::ceil(band.high_C * unit - 1e-6)) / unit;
+    const double shown_K = std::abs(std::floor(margin * unit + 1e-6) / unit);
     const QString where = (margin >= 0) == floor ? "above" : "below";
     return QString("the %1 metal, %2, %3 %4 %5 %6")
-        .arg(floor ? "coldest" : "hottest", celsiusText(metal_C), margin >= 0 ? "stays" : "is",
-             withUnit(std::abs(std::floor(margin)), "K"), where, causeWithTemperature(limit));
+        .arg(floor ? "coldest" : "hottest", celsiusText(metal_C, decimals), margin >= 0 ? "stays" : "is",
+             withUnit(shown_K, "K", decimals), where, causeWithTemperature(limit, decimals));
 }
 
 QString capital(QString sentence) {
@@ -53,34 +59,42 @@ QString capital(QString sentence) {
     return sentence;
 }
 
-/// The limit of one side with the smallest margin against what the shop asks for.
-const Limit* closest(const std::vector<Limit>& limits, const Band& band, const ShopRules& rules) {
-    const Limit* found = nullptr;
-    double least = 0;
+/// The limit of one side to speak of: the one that is broken most, else the one that falls shortest of what the shop
+/// asks for, else the binding one.
+const Limit* toSpeakOf(const std::vector<Limit>& limits, const Band& band, const ShopRules& rules) {
+    const Limit *broken = nullptr, *short_of = nullptr;
+    double least = 0, least_spare = 0;
     for (const Limit& limit : limits) {
         const auto margin = marginTo(limit, band);
         if (!margin) continue;
-        const double spare = *margin - neededMargin_K(limit, rules);
-        if (!found || spare < least) found = &limit, least = spare;
+        if (*margin < least) broken = &limit, least = *margin;
+        if (const double spare = *margin - neededMargin_K(limit, rules); spare < least_spare)
+            short_of = &limit, least_spare = spare;
     }
-    return found;
+    return broken ? broken : short_of ? short_of : binding(limits);
 }
 
-/// The smallest change of one element that would part two crossing limits, to first order.
-QString whatWouldOpen(const Limit& floor, const Limit& ceiling, double crossing_K) {
-    std::map<std::string, double> opening_K_per_wt;
-    for (const auto& [element, slope] : floor.K_per_wt) opening_K_per_wt[element] -= slope;
-    for (const auto& [element, slope] : ceiling.K_per_wt) opening_K_per_wt[element] += slope;
-    if (opening_K_per_wt.empty()) return "Both are set by people: only another rule, order or furnace opens it.";
+/// The smallest change of one element, against its own content, that would part two crossing limits; to first order,
+/// and only where first order means something: less than a seventh of the content, of an element that is no trace.
+QString whatWouldOpen(const WindowAnswer& answer, const Limit& floor, const Limit& ceiling, double crossing_K) {
+    if (floor.K_per_wt.empty() && ceiling.K_per_wt.empty())
+        return "Both are set by people: only another rule, order or furnace opens it.";
+    constexpr double kTrace_wt = 0.01, kMostChange = 0.15;
     std::string best;
-    double change_wt = 0;
-    for (const auto& [element, slope] : opening_K_per_wt) {
-        if (std::abs(slope) < 1) continue;
-        const double change = crossing_K / slope;
-        if (best.empty() || std::abs(change) < std::abs(change_wt)) best = element, change_wt = change;
+    double least = kMostChange, change_wt = 0;
+    for (const auto& [element, content] : answer.chemistry_wt) {
+        const auto in = [&element = element](const Limit& limit) {
+            const auto at = limit.K_per_wt.find(element);
+            return at == limit.K_per_wt.end() ? 0.0 : at->second;
+        };
+        const double opening_K_per_wt = in(ceiling)-in(floor);
+        if (content < kTrace_wt || opening_K_per_wt == 0) continue;
+        const double change = crossing_K / opening_K_per_wt;
+        if (std::abs(change) / content < least) best = element, least = std::abs(change) / content, change_wt = change;
     }
-    if (best.empty() || std::abs(change_wt) > 1) return "No small change of the chemistry opens it.";
-    return QString("About %1 %2 %3 would open it (first order), or a smaller safety margin on either limit.")
+    if (best.empty())
+        return "No small change of the chemistry opens it; a smaller safety margin or another rule might.";
+    return QString("About %1 %2 %3 would open it (first order), or a smaller safety margin.")
         .arg(withUnit(std::abs(change_wt), "%", std::abs(change_wt) < 0.1 ? 3 : 2), change_wt < 0 ? "less" : "more",
              QString::fromStdString(best));
 }
@@ -89,6 +103,12 @@ QString driversOf(const Limit& limit) {
     if (limit.drivers.isEmpty()) return {};
     return QString(" %1 %2: %3.")
         .arg(capital(limit.cause), limit.side == Side::floor ? "lies high here" : "lies low here", limit.drivers);
+}
+
+/// The two answers never mix, but whoever reads only one of them must learn of the other.
+QString gradeSentence(const WindowAnswer& answer) {
+    return answer.grade_check.verdict == "fails" ? QString(" The grade check fails, whatever the setpoint.")
+                                                 : QString();
 }
 
 void explainNotComputed(WindowAnswer& answer, const Limit& limit) {
@@ -106,10 +126,11 @@ void explainNoWindow(WindowAnswer& answer, const Limit* floor, const Limit* ceil
             return;
         }
     const double crossing_K = *floor->temperature_C - *ceiling->temperature_C;
-    answer.reason = QString("No window: %1 asks for at least %2, %3 for at most %4; they cross by %5. %6")
-                        .arg(floor->cause, shownTemperature(*floor), ceiling->cause, shownTemperature(*ceiling),
-                             withUnit(std::ceil(crossing_K), "K"), whatWouldOpen(*floor, *ceiling, crossing_K)) +
-                    driversOf(*floor) + driversOf(*ceiling);
+    answer.reason =
+        QString("No window: %1 asks for at least %2, %3 for at most %4; they cross by %5. %6")
+            .arg(floor->cause, shownTemperature(*floor), ceiling->cause, shownTemperature(*ceiling),
+                 withUnit(std::ceil(crossing_K), "K"), whatWouldOpen(answer, *floor, *ceiling, crossing_K)) +
+        driversOf(*floor) + driversOf(*ceiling);
 }
 
 QString adviceFor(const WindowAnswer& answer, const Furnace& furnace) {
@@ -125,8 +146,8 @@ QString adviceFor(const WindowAnswer& answer, const Furnace& furnace) {
 }
 
 void explainBand(WindowAnswer& answer, const Furnace& furnace, const ShopRules& rules) {
-    const Limit* floor = closest(answer.floors, answer.band, rules);
-    const Limit* ceiling = closest(answer.ceilings, answer.band, rules);
+    const Limit* floor = toSpeakOf(answer.floors, answer.band, rules);
+    const Limit* ceiling = toSpeakOf(answer.ceilings, answer.band, rules);
     QStringList clauses;
     QString drivers;
     for (const Limit* limit : {floor, ceiling}) {
@@ -138,8 +159,8 @@ void explainBand(WindowAnswer& answer, const Furnace& furnace, const ShopRules& 
         if (margin < needed) drivers += driversOf(*limit);
         clauses << text;
     }
-    answer.reason =
-        capital(word(answer.verdict)) + ": " + clauses.join("; ") + "." + drivers + adviceFor(answer, furnace);
+    answer.reason = capital(word(answer.verdict)) + ": " + clauses.join("; ") + "." + drivers +
+                    adviceFor(answer, furnace) + gradeSentence(answer);
 }
 
 }  // namespace

@@ -83,9 +83,10 @@ struct WindowAnswer {
     std::optional<double> margin_K;  ///< smaller of the two, negative = outside
     QString reason;                  ///< one or two plain sentences with the two binding causes
     GradeCheck grade_check;
-    QStringList left_out;   ///< elements kept and grade-checked, not in the equilibrium: "P 0.024"
-    QStringList remarks;    ///< little evidence, what-if, extrapolation
-    QStringList published;  ///< published ranges of the grade, as information
+    std::map<std::string, double> chemistry_wt;  ///< what went into the equilibrium, wt%
+    QStringList left_out;                        ///< elements kept and grade-checked, not in the equilibrium: "P 0.024"
+    QStringList remarks;                         ///< little evidence, what-if, extrapolation
+    QStringList published;                       ///< published ranges of the grade, as information
     QString data_set, data_version, program_version;
     std::optional<Sweep> sweep;  ///< for the rail; Kelvin
 };
