@@ -15,6 +15,7 @@ constexpr int kMostElements = 24;
 constexpr double kFloor = 1e-20;     // smallest site fraction: below it a constituent weighs nothing in G
 constexpr double kViolation = 2e-7;  // driving force, in RT per mole of atoms, above which a phase enters
 constexpr double kWarmRange = 60;    // K between neighbours that may start from each other
+constexpr double kResettle = 0.05;  // fall of a sample, in RT per formula unit, after which its class is searched again
 
 /// Euclidean distance of the square roots of site fractions: the natural metric of mixing entropy.
 double distance2(const double* y, const double* z, int n) {
@@ -244,6 +245,7 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
             rhs[elements + s] = local.G - a.dot(p.mu);
             set.atoms = local.atoms;
             set.gibbs = local.G;
+            set.unstable = local.shifted;
             if (!condition) continue;
             const int last = size - 1;
             M.block(0, last, elements, 1) -= set.n * (W.transpose() * wT);
@@ -392,7 +394,7 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
         local.backward(dz, n);
         if (!local.shifted && turn > 0) {  // heading for a place that is known already?
             for (const PhaseSet& set : sets)
-                if (set.phase == m.set.phase && distance2(set.y.data(), y, n) < 2e-3) return;
+                if (set.phase == m.set.phase && !set.unstable && distance2(set.y.data(), y, n) < 2e-3) return;
             for (const Minimum& other : known)
                 if (other.set.phase == m.set.phase && distance2(other.set.y.data(), y, n) < 1e-4 &&
                     other.height < m.height + 1e-6)
@@ -405,7 +407,7 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
             break;
         }
         for (int c = 0; c < n; ++c) change = std::max(change, std::abs(dz[c] * local.root[c]));
-        double alpha = change > 0.3 ? 0.3 / change : 1;
+        double alpha = change > 0.2 ? 0.2 / change : 1;  // short enough to stay in the valley
         for (int halving = 0; halving < 30; ++halving, alpha /= 2) {
             std::copy(y, y + n, next);
             move(model, dz, alpha, next);
@@ -419,6 +421,22 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
         std::copy(next, next + n, y);
     }
     m.set.atoms = model.amounts(y, amounts, elements);
+}
+
+/// True when a known place of the phase no longer lies where it lay when every class of the phase was last open: what
+/// led to it then may lead elsewhere now, as when a miscibility gap opens.
+bool Solver::hasMoved(const Point& p, int phase, const std::vector<Minimum>& found) const {
+    constexpr double kMoved = 3e-3;
+    const int n = system_->phases()[static_cast<size_t>(phase)].size;
+    const auto away = [&](const PhaseSet& set) {
+        if (set.phase != phase) return false;
+        if (set.unstable) return true;
+        return std::none_of(p.anchors.begin(), p.anchors.end(), [&](const PhaseSet& anchor) {
+            return anchor.phase == phase && distance2(anchor.y.data(), set.y.data(), n) < kMoved;
+        });
+    };
+    return std::any_of(p.sets.begin(), p.sets.end(), away) ||
+           std::any_of(found.begin(), found.end(), [&](const Minimum& m) { return away(m.set); });
 }
 
 double Solver::prove(Point& p, bool thorough) {
@@ -435,6 +453,7 @@ double Solver::prove(Point& p, bool thorough) {
     std::vector<double> best;
     std::vector<int> bestAt;
     double proof = 0;
+    if (thorough) p.anchors.clear();
     if (thorough || p.settled.empty())
         p.settled.assign(static_cast<size_t>(samples.firstKind.back()), std::numeric_limits<double>::infinity());
     for (size_t f = 0; f < models.size(); ++f) {
@@ -471,6 +490,15 @@ double Solver::prove(Point& p, bool thorough) {
         };
         for (const Minimum& m : p.minima)
             if (m.set.phase == static_cast<int>(f)) consider(m);
+        const bool opened = hasMoved(p, static_cast<int>(f), found);
+        if (opened) {
+            std::fill(p.settled.begin() + samples.firstKind[f], p.settled.begin() + samples.firstKind[f + 1],
+                      std::numeric_limits<double>::infinity());
+            std::erase_if(p.anchors, [f](const PhaseSet& anchor) { return anchor.phase == static_cast<int>(f); });
+            for (const PhaseSet& set : p.sets)
+                if (set.phase == static_cast<int>(f)) p.anchors.push_back(set);
+            for (size_t k = firstFound; k < found.size(); ++k) p.anchors.push_back(found[k].set);
+        }
         best.assign(static_cast<size_t>(samples.firstKind[f + 1] - samples.firstKind[f]),
                     std::numeric_limits<double>::infinity());
         bestAt.assign(best.size(), -1);
@@ -482,12 +510,12 @@ double Solver::prove(Point& p, bool thorough) {
         double* settled = p.settled.data() + samples.firstKind[f];
         const double reach = (thorough ? 3.0 : 1.0) * RT * most;
         for (size_t kind = 0; kind < best.size(); ++kind)
-            if (bestAt[kind] >= 0 && best[kind] < reach && (thorough || best[kind] < settled[kind] - 0.15 * RT * most))
+            if (bestAt[kind] >= 0 && best[kind] < reach && (thorough || best[kind] < settled[kind] - kResettle * RT))
                 order.push_back({best[kind], bestAt[kind]});
         std::sort(order.begin(), order.end());
         size_t starts = 0;
         for (const auto& [height, at] : order) {
-            if (starts++ >= (thorough ? 12u : 4u)) break;
+            if (starts++ >= (thorough || opened ? 16u : 4u)) break;
             Minimum m;
             m.set.phase = static_cast<int>(f);
             std::copy(samples.site(at), samples.site(at) + models[f].size, m.set.y.begin());
@@ -689,12 +717,26 @@ bool Solver::exchange(Point& p, const std::vector<Minimum>& entering) {
     return !p.sets.empty();
 }
 
+/// Every set lies on the plane and the sets add up to the alloy: what Newton's last step must have reached.
+bool Solver::stands(const Point& p) const {
+    double amounts[kMostElements];
+    const int elements = system_->elementCount();
+    const Eigen::Map<const Eigen::VectorXd> a(amounts, elements);
+    Eigen::VectorXd lack = b_;
+    for (const PhaseSet& set : p.sets) {
+        system_->phases()[static_cast<size_t>(set.phase)].amounts(set.y.data(), amounts, elements);
+        if (std::abs(set.gibbs - a.dot(p.mu)) > 1e-7 * kGas * p.T * set.atoms) return false;
+        lack -= set.n * a;
+    }
+    return lack.cwiseAbs().maxCoeff() < 1e-10;
+}
+
 bool Solver::converge(Point& p, bool thorough) {
     double last = std::numeric_limits<double>::infinity();
     int stalls = 0;
     bool assured = !thorough;
     for (int round = 0; round < 40; ++round) {
-        if (!refine(p, nullptr, nullptr)) return false;
+        if (!refine(p, nullptr, nullptr) || !stands(p)) return false;
         if (p.gibbs > last - 1e-9 && ++stalls > 3) return false;
         last = std::min(last, p.gibbs);
         // Until the answer stands, a light search is enough to see what enters; then the thorough one confirms.

@@ -18,6 +18,7 @@ struct PhaseSet {
     double atoms = 0;                           ///< mole of atoms per formula unit
     double gibbs = 0;                           ///< J per mole of formula unit
     std::array<double, PhaseModel::kMost> y{};  ///< site fractions
+    bool unstable = false;                      ///< its curvature is not positive: it wants to split
 };
 
 /// A local minimum of one phase's distance to the tangent plane.
@@ -38,7 +39,8 @@ struct Point {
     /// Per class of samples (System::Samples::kind, all phases end to end): the height of its best sample when a search
     /// from it last ended in a place that was known already.
     std::vector<double> settled;
-    Eigen::VectorXd sampleHeight;  ///< heights of the samples at this state
+    std::vector<PhaseSet> anchors;  ///< where the known places of each phase lay when its classes were last all open
+    Eigen::VectorXd sampleHeight;   ///< heights of the samples at this state
 };
 
 /// What takes the place of a given temperature: sum over sets of n (q . a) = 0, q one weight per element and set.
@@ -87,6 +89,7 @@ private:
     bool refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db);
     void descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std::vector<Minimum>& known,
                  const std::vector<PhaseSet>& sets);
+    bool stands(const Point& p) const;
     bool converge(Point& p, bool thorough);
     bool exchange(Point& p, const std::vector<Minimum>& entering);
     Point coldStart(double T);
@@ -97,6 +100,7 @@ private:
     bool solveHull(Hull& hull, const std::vector<PhaseSet>& extra, bool withSamples);
     void complete(PhaseSet& set, double T) const;
     std::vector<Minimum> violators(const Point& p) const;
+    bool hasMoved(const Point& p, int phase, const std::vector<Minimum>& found) const;
 
     std::shared_ptr<const System> system_;
     Eigen::VectorXd b_;

@@ -50,6 +50,17 @@ Function defaultEndMember(const DataSet& data, const PhaseModel& model, const st
     return function;
 }
 
+/// The class of a point: its main constituent on every sublattice.
+int kindOf(const PhaseModel& model, const double* y) {
+    int kind = 0;
+    for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s) {
+        const int first = model.start[s], last = model.start[s + 1];
+        const int main = static_cast<int>(std::max_element(y + first, y + last) - y) - first;
+        kind = kind * (last - first) + main;
+    }
+    return kind;
+}
+
 /// The active part of one phase, or a model of size 0 when a sublattice has no active constituent.
 PhaseModel shapeOf(const DataSet& data, int index, const std::vector<int>& elements) {
     const PhaseData& phase = data.phases[static_cast<size_t>(index)];
@@ -207,17 +218,6 @@ void System::slopesAt(double T, Eigen::VectorXd& at) const {
     at.noalias() = ranges_[rangeOf(T)] * Eigen::Map<const Eigen::Matrix<double, kPowers, 1>>(basis.data());
 }
 
-int System::kindOf(int phase, const double* y) const {
-    const PhaseModel& model = phases_[static_cast<size_t>(phase)];
-    int kind = 0;
-    for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s) {
-        const int first = model.start[s], last = model.start[s + 1];
-        const int main = static_cast<int>(std::max_element(y + first, y + last) - y) - first;
-        kind = kind * (last - first) + main;
-    }
-    return kind;
-}
-
 void System::makeSamples() {
     constexpr double kSoft = 0.03;  // what the other constituents share at a corner
     constexpr int kRandom = 40;     // random points of each phase with freedom on it
@@ -231,10 +231,13 @@ void System::makeSamples() {
         int kinds = 1;
         for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s)
             kinds *= model.start[s + 1] - model.start[s];
-        samples_.firstKind.push_back(samples_.firstKind.back() + kinds);
+        samples_.firstKind.push_back(samples_.firstKind.back() + 2 * kinds);
+        // Mixed points have classes of their own: a search must start from every corner, even where a mixture lies
+        // lower.
+        bool mixed = false;
         const auto add = [&](const std::vector<double>& y) {
             samples_.phase.push_back(static_cast<int>(p));
-            samples_.kind.push_back(kindOf(static_cast<int>(p), y.data()));
+            samples_.kind.push_back(kindOf(model, y.data()) + (mixed ? kinds : 0));
             samples_.offset.push_back(static_cast<int>(samples_.y.size()));
             samples_.y.insert(samples_.y.end(), y.begin(), y.end());
         };
@@ -251,6 +254,7 @@ void System::makeSamples() {
         };
         corners(corners, 0, std::vector<double>(static_cast<size_t>(model.size)));
         if (kinds == 1) continue;
+        mixed = true;
         const int corner0 = samples_.first.back(), cornerEnd = samples_.count();
         for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s) {
             const int first = model.start[s], last = model.start[s + 1];

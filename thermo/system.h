@@ -36,8 +36,9 @@ public:
         Eigen::VectorXd atoms;         ///< moles of atoms per formula unit
         Eigen::VectorXd idealEntropy;  ///< R sum a y ln y, J/K
         std::vector<int> phase;        ///< index into phases()
-        std::vector<int> kind;         ///< class within the phase: main constituent of every sublattice
-        std::vector<int> offset;       ///< of the sample's site fractions in `y`
+        std::vector<int>
+            kind;  ///< class within the phase: main constituent of every sublattice; corners and mixtures apart
+        std::vector<int> offset;  ///< of the sample's site fractions in `y`
         std::vector<double> y;
         std::vector<int> first;        ///< first sample of each phase, and one past the last: phases + 1
         std::vector<int> firstKind;    ///< first class of each phase, and one past the last: phases + 1
@@ -48,8 +49,6 @@ public:
     const Samples& samples() const { return samples_; }
     /// G of every sample at T, J per mole of formula unit.
     void sampleGibbs(double T, Eigen::VectorXd& G) const;
-    /// The class of a point of a phase, comparable with Samples::kind.
-    int kindOf(int phase, const double* y) const;
 
 private:
     using Coefficients = Eigen::Matrix<double, Eigen::Dynamic, kPowers>;
