@@ -72,7 +72,7 @@ void AnswerPanel::buildHead(QVBoxLayout* column) {
     head->addWidget(headline_, 1);
     column->addLayout(head);
     reason_ = wrapping();
-    reason_->setMinimumHeight(3 *
+    reason_->setMinimumHeight(5 *
                               reason_->fontMetrics().lineSpacing());  // the stack below must not jump while dragging
     column->addWidget(reason_);
 }
@@ -292,8 +292,11 @@ void AnswerPanel::fillButtons() {
     issue_->setToolTip(obstacles.isEmpty() ? tr("Gives the sheet a number and keeps it in the store.")
                                            : tr("Only a draft: %1").arg(obstacles.join(QStringLiteral("; "))));
     const auto& suggested = answer_.suggested_setpoint_C;
-    suggest_->setVisible(suggested && std::abs(*suggested - answer_.setpoint_C) > 0.01);
-    if (suggested) suggest_->setText(tr("&Use %1, where the margins are best").arg(units_.temperature(*suggested)));
+    const bool elsewhere = suggested && std::abs(*suggested - answer_.setpoint_C) > 0.01;
+    suggest_->setEnabled(elsewhere);  // it stays where it is, so that nothing jumps while dragging
+    suggest_->setText(elsewhere   ? tr("&Use %1, which fits better").arg(units_.temperature(*suggested))
+                      : suggested ? tr("No setpoint fits better")
+                                  : tr("No setpoint fits"));
 }
 
 void AnswerPanel::fillFollowing() {

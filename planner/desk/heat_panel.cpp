@@ -45,10 +45,10 @@ void setUp(QTableView* table) {
     header->setDefaultAlignment(Qt::AlignLeft | Qt::AlignVCenter);
     header->setSectionResizeMode(HeatModel::marginColumn, QHeaderView::Stretch);
     const QFontMetrics metrics = table->fontMetrics();
-    table->setColumnWidth(HeatModel::verdictColumn, metrics.horizontalAdvance(QStringLiteral("not computed")) + 36);
+    table->setColumnWidth(HeatModel::verdictColumn, metrics.horizontalAdvance(QStringLiteral("not computed")) + 32);
     table->setColumnWidth(HeatModel::heatColumn, metrics.horizontalAdvance(QStringLiteral("T-21-0463")) + 14);
-    table->setColumnWidth(HeatModel::gradeColumn, metrics.horizontalAdvance(QStringLiteral("CD3MWCuN")) + 12);
-    table->setColumnWidth(HeatModel::cycleColumn, metrics.horizontalAdvance(QStringLiteral("SA-300")) + 16);
+    table->setColumnWidth(HeatModel::gradeColumn, metrics.horizontalAdvance(QStringLiteral("CD3MWCuN")) + 10);
+    table->setColumnWidth(HeatModel::cycleColumn, metrics.horizontalAdvance(QStringLiteral("SA-300")) + 12);
     table->setAccessibleName(HeatPanel::tr("Heats"));
 }
 
@@ -109,6 +109,7 @@ HeatPanel::HeatPanel(QWidget* parent)
         progress_->hide();
         stop_->hide();
         summarise();
+        if (table_->currentIndex().isValid()) table_->scrollTo(table_->currentIndex());
     });
 }
 

@@ -72,7 +72,7 @@ MainWindow::MainWindow(QWidget* parent)
     bench_->setStretchFactor(0, 0);
     bench_->setStretchFactor(1, 1);
     bench_->setStretchFactor(2, 0);
-    bench_->setSizes({400, 556, 410});
+    bench_->setSizes({440, 530, 396});
     bench_->setChildrenCollapsible(false);
     pages_->addWidget(start_);
     pages_->addWidget(bench_);

@@ -29,6 +29,12 @@ QString compositionText(const std::map<std::string, double>& wt, size_t at_most)
     return words.join(QStringLiteral("  "));
 }
 
+/// "specification minimum 1040 °C" under "Floor 1040 °C" says the number twice and leaves no room for the words.
+QString withoutTemperature(const QString& cause, double celsius) {
+    const QString tail = QLatin1Char(' ') + celsiusText(celsius);
+    return cause.endsWith(tail) ? cause.chopped(tail.size()) : cause;
+}
+
 /// Gives each bracket the first lane, counted from the ribbons, in which it meets no other.
 void chooseLanes(std::vector<Ledge>& ledges) {
     constexpr int kLanes = 3;
@@ -138,7 +144,7 @@ void Rail::collectLedges(const WindowAnswer& answer) {
             ledge.binding = first;
             ledge.at_C = *limit.temperature_C;
             ledge.uncertainty_K = limit.set ? 0 : limit.uncertainty_K;
-            ledge.cause = limit.cause;
+            ledge.cause = withoutTemperature(limit.cause, *limit.temperature_C);
             ledge.temperature = limitTemperature(limit, units_);
             ledges_.push_back(ledge);
             first = false;

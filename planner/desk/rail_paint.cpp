@@ -15,6 +15,7 @@ namespace soak::desk {
 namespace {
 
 constexpr double kTickSpacing = 44, kLedgeDepth = 9;
+constexpr double kLeastInLegend = 2e-4;  // less is narrower than a hair, even magnified
 
 QColor faded(QColor colour, double alpha) {
     colour.setAlphaF(float(alpha));
@@ -291,7 +292,7 @@ void Rail::paintLegend(QPainter& painter) {
     for (double at = scale_.top; at <= scale_.bottom; at += 2) {
         const auto fractions = ribbons_.fractionsAt(scale_.celsius(at));
         for (size_t i = 0; i < labels.size(); ++i)
-            if (fractions[i] > 1e-5) seen[i] = true;
+            if (fractions[i] > kLeastInLegend) seen[i] = true;
     }
     for (size_t i = 0; i < labels.size(); ++i) {
         if (!seen[i]) continue;
