@@ -52,10 +52,10 @@ std::vector<Caution> cautionsFor(const std::vector<Caution>& all, const Cycle& c
     const auto worse = [](const Caution& a, const Caution& b) { return rankOf(a.severity) < rankOf(b.severity); };
     std::stable_sort(special.begin(), special.end(), worse);
     std::stable_sort(general.begin(), general.end(), worse);
-    // Two places are kept for what holds at every furnace.
+    // One place is kept for what holds at every furnace.
     std::vector<Caution> chosen;
     for (const Caution& caution : special)
-        if (chosen.size() + 2 < most) chosen.push_back(caution);
+        if (chosen.size() + 1 < most) chosen.push_back(caution);
     for (const Caution& caution : general)
         if (chosen.size() < most) chosen.push_back(caution);
     std::stable_sort(chosen.begin(), chosen.end(), worse);

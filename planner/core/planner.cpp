@@ -198,6 +198,15 @@ void sayEvidence(WindowAnswer& answer) {
     if (!thin.isEmpty()) answer.remarks << "little evidence behind: " + listed(thin);
 }
 
+/// The crew cannot set what the controller does not take.
+void sayOffStep(WindowAnswer& answer, const Furnace& furnace) {
+    const double off_K = stepUp_C(furnace, answer.setpoint_C) - stepDown_C(furnace, answer.setpoint_C);
+    if (furnace.id.isEmpty() || off_K < 1e-6) return;
+    answer.remarks << QString("%1 is not on the controller's step of %2")
+                          .arg(temperatureText(answer.setpoint_C, furnace.controller_fahrenheit),
+                               withUnit(furnace.step, furnace.controller_fahrenheit ? "°F" : "°C"));
+}
+
 /// With one element missing: what the ends of its range in the grade would give. Never a verdict.
 void sayWhatIf(WindowAnswer& answer, const Job& job, const Shelf& shelf, const Family& family, const Grade& row,
                ReportCache& cache) {
@@ -283,6 +292,8 @@ Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cach
     auto band = bandOrSetpoint(job.furnace, answer.setpoint_C, shelf.rules);
     if (!band) return std::move(band).error();
     answer.band = std::move(band).value();
+
+    sayOffStep(answer, job.furnace);
 
     computeLimits(answer, job, shelf, *family, row, cache);
     decide(answer, job.furnace, shelf.rules);

@@ -14,7 +14,8 @@
 namespace soak {
 namespace {
 
-constexpr std::size_t kMostCautions = 6;
+constexpr std::size_t kMostCautions = 4;  // what fits on one page beside the work
+const QString kLoadSensor = "LT1";
 
 /// Rounds both units on their own, the same safe way.
 using Rounding = double (*)(double);
@@ -67,7 +68,7 @@ const Quench* quenchFor(const SheetRequest& request) {
 
 void fillSoak(SheetContent& sheet, const SheetRequest& request, const UnitsOf& units) {
     const Cycle& cycle = request.job.cycle;
-    sheet.soak_sensor = "load sensor in the slowest piece";
+    sheet.soak_sensor = kLoadSensor;
     sheet.soak_start = units.temperature(
         request.answer.low_C ? std::max(*request.answer.low_C, request.answer.band.low_C) : request.answer.band.low_C,
         up);
@@ -135,14 +136,15 @@ void fillFurnace(SheetContent& sheet, const SheetRequest& request, const UnitsOf
     sheet.band_rule = answer.band.rule;
     if (answer.high_C) sheet.never_above = units.temperature(*answer.high_C, down);
     if (furnace.maximum_load_kg > 0) sheet.load_notes << "at most " + withUnit(furnace.maximum_load_kg, "kg");
-    sheet.load_notes << "pieces do not touch each other, the walls or the elements";
-    sheet.thermocouple_notes << "load sensor in the slowest piece, at mid-length of the thickest section";
-    sheet.thermocouple_notes << "at the first soak compare with an independent reading";
+    sheet.load_notes << "nothing touches: pieces, walls, elements";
+    sheet.thermocouple_notes << kLoadSensor + " in the slowest piece, thickest section";
+    sheet.thermocouple_notes << "compare with an independent reading at first soak";
     if (!furnace.work_zone_mm.isEmpty()) {
         LoadSketch sketch;
         sketch.round = request.job.heat.product_form != "plate";
         sketch.work_zone = furnace.work_zone_mm + QString(QChar(0x2009)) + "mm";
-        sketch.sensors = {{"LT1", "load sensor, slowest piece", true, 0.5, 0.5}, {"CT", "control", false, 0.1, 0.9}};
+        sketch.sensors = {{kLoadSensor, "load sensor, slowest piece", true, 0.5, 0.5},
+                          {"CT", "control", false, 0.1, 0.9}};
         sheet.sketch = sketch;
     }
 }
