@@ -31,6 +31,7 @@ QFont scaled(QFont font, double factor, bool strong) {
 QLabel* wrapping(bool selectable = true) {
     auto* label = new QLabel;
     label->setWordWrap(true);
+    label->setTextFormat(Qt::PlainText);
     label->setAlignment(Qt::AlignLeft | Qt::AlignTop);
     if (selectable) label->setTextInteractionFlags(Qt::TextSelectableByMouse | Qt::TextSelectableByKeyboard);
     return label;
@@ -79,6 +80,7 @@ void AnswerPanel::buildHead(QVBoxLayout* column) {
 
 AnswerPanel::Line AnswerPanel::addLine(QGridLayout* grid, int row, bool strong) {
     Line line{new QLabel, new QLabel, new QLabel};
+    for (QLabel* label : {line.name, line.value, line.note}) label->setTextFormat(Qt::PlainText);
     line.value->setAlignment(Qt::AlignRight | Qt::AlignVCenter);
     line.value->setFont(scaled(font(), strong ? 1.2 : 1.0, true));
     line.note->setWordWrap(true);
@@ -90,9 +92,9 @@ AnswerPanel::Line AnswerPanel::addLine(QGridLayout* grid, int row, bool strong) 
 
 void AnswerPanel::buildStack(QVBoxLayout* column) {
     auto* frame = new QFrame;
-    frame->setObjectName(QStringLiteral("stack"));
-    frame->setStyleSheet(
-        QStringLiteral("#stack { background: palette(base); border: 1px solid palette(mid); border-radius: 4px; }"));
+    frame->setFrameShape(QFrame::StyledPanel);
+    frame->setBackgroundRole(QPalette::Base);
+    frame->setAutoFillBackground(true);
     auto* grid = new QGridLayout(frame);
     grid->setContentsMargins(12, 8, 12, 8);
     grid->setHorizontalSpacing(12);
@@ -176,7 +178,8 @@ void AnswerPanel::buildFolds(QVBoxLayout* column) {
     published_ = addTextFold(folds, tr("Published ranges of the grade"), published_fold_);
     remarks_ = addTextFold(folds, tr("Remarks and versions"), remarks_fold_);
     folds->addStretch(1);
-    connect(phases_fold_, &Fold::toggled, this, &AnswerPanel::fillFollowing);
+    for (const Fold* fold : {phases_fold_, band_fold_})
+        connect(fold, &Fold::toggled, this, &AnswerPanel::fillFollowing);
 
     folds_ = new QScrollArea;
     folds_->setWidgetResizable(true);
@@ -219,7 +222,7 @@ void AnswerPanel::follow(const WindowAnswer& answer) {
     answer_.sweep.reset();  // held as ribbons; a drag must not copy it
     mark_->setVerdict(answer_.verdict);
     headline_->setText(verdictHeadline(answer_, units_));
-    reason_->setText(answer_.reason);
+    reason_->setText(unbroken(answer_.reason));
     fillStack();
     fillButtons();
     fillFollowing();
@@ -245,9 +248,9 @@ void AnswerPanel::fillLimitLine(const Line& line, const std::vector<Limit>& limi
     }
     line.value->setText(limitTemperature(*limit, units_));
     const bool scatters = limit->temperature_C && !limit->set && limit->uncertainty_K > 0;
-    const QString spread =
-        scatters ? QStringLiteral(" (± %1)").arg(units_.difference(limit->uncertainty_K)) : QString();
-    line.note->setText(limit->temperature_C || limit->remark.isEmpty() ? limit->cause + spread : limit->remark);
+    const QString spread = scatters ? QStringLiteral(" (±%1)").arg(units_.difference(limit->uncertainty_K)) : QString();
+    line.note->setText(unbroken(
+        limit->temperature_C || limit->remark.isEmpty() ? causeWithoutTemperature(*limit) + spread : limit->remark));
 }
 
 void AnswerPanel::fillStack() {
@@ -281,7 +284,7 @@ void AnswerPanel::fillStack() {
             grade += QStringLiteral(" – ") + finding.text;
             break;
         }
-    grade_->setText(grade);
+    grade_->setText(unbroken(grade));
     warnings_->setVisible(!answer_.band.warnings.isEmpty());
     warnings_->setText(answer_.band.warnings.join(QLatin1Char('\n')));
 }
@@ -300,7 +303,7 @@ void AnswerPanel::fillButtons() {
 }
 
 void AnswerPanel::fillFollowing() {
-    band_->setText(bandDetails(answer_.band, units_));
+    if (band_fold_->isOpen()) band_->setText(bandDetails(answer_.band, units_));
     phases_fold_->setTitle(tr("Phases at %1").arg(units_.temperature(answer_.setpoint_C)));
     if (phases_fold_->isOpen()) phases_->setText(phaseTable(ribbons_, answer_.setpoint_C));
 }

@@ -2,20 +2,17 @@
 #include "fold.h"
 
 #include <QVBoxLayout>
+#include <utility>
 
 namespace soak::desk {
 
-Fold::Fold(const QString& title, QWidget* body, QWidget* parent) : QWidget(parent), heading_(new QToolButton) {
-    heading_->setCheckable(true);
+Fold::Fold(const QString& title, QWidget* body, QWidget* parent)
+    : QWidget(parent), heading_(new QToolButton), body_(body) {
     heading_->setAutoRaise(true);
     heading_->setToolButtonStyle(Qt::ToolButtonTextBesideIcon);
     heading_->setArrowType(Qt::RightArrow);
     heading_->setSizePolicy(QSizePolicy::Expanding, QSizePolicy::Fixed);
     heading_->setMinimumHeight(32);
-    heading_->setStyleSheet(QStringLiteral(
-        "QToolButton { border: 1px solid transparent; border-radius: 3px; text-align: left; padding-left: 4px; }"
-        "QToolButton:hover { background: palette(midlight); }"
-        "QToolButton:focus { border-color: palette(highlight); }"));
     heading_->setFocusPolicy(Qt::StrongFocus);
     setTitle(title);
     auto* column = new QVBoxLayout(this);
@@ -25,11 +22,13 @@ Fold::Fold(const QString& title, QWidget* body, QWidget* parent) : QWidget(paren
     column->addWidget(body);
     body->setContentsMargins(20, 0, 4, 8);
     body->hide();
-    connect(heading_, &QToolButton::toggled, this, [this, body](bool open) {
-        heading_->setArrowType(open ? Qt::DownArrow : Qt::RightArrow);
-        body->setVisible(open);
-        emit toggled(open);
-    });
+    connect(heading_, &QToolButton::clicked, this, [this] { setOpen(!isOpen()); });
+}
+
+void Fold::setOpen(bool open) {
+    heading_->setArrowType(open ? Qt::DownArrow : Qt::RightArrow);
+    body_->setVisible(open);
+    if (std::exchange(open_, open) != open) emit toggled(open);
 }
 
 void Fold::setTitle(const QString& title) {

@@ -12,8 +12,8 @@ class Fold : public QWidget {
 public:
     Fold(const QString& title, QWidget* body, QWidget* parent = nullptr);
     void setTitle(const QString& title);
-    bool isOpen() const { return heading_->isChecked(); }
-    void setOpen(bool open) { heading_->setChecked(open); }
+    bool isOpen() const { return open_; }
+    void setOpen(bool open);
     QToolButton* heading() const { return heading_; }
 
 signals:
@@ -21,6 +21,8 @@ signals:
 
 private:
     QToolButton* heading_;
+    QWidget* body_;
+    bool open_ = false;
 };
 
 }  // namespace soak::desk

@@ -43,12 +43,13 @@ void HeatDelegate::paintVerdictCell(QPainter& painter, const QStyleOptionViewIte
     const QString text = cell.text;
     const QColor ink = paintGround(painter, cell);
     const QVariant verdict = index.data(HeatModel::verdictRole);
-    if (!verdict.isValid()) return;
-    const bool selected = option.state & QStyle::State_Selected;
-    const auto value = Verdict(verdict.toInt());
-    const QColor mark = selected ? ink : verdictColour(value, isDark(option.palette.color(QPalette::Base)));
-    const QRectF box(option.rect.left() + 8, option.rect.center().y() - 5.5, 12, 12);
-    paintVerdict(painter, box, value, mark);
+    if (verdict.isValid()) {
+        const bool selected = option.state & QStyle::State_Selected;
+        const auto value = Verdict(verdict.toInt());
+        const QColor mark = selected ? ink : verdictColour(value, isDark(option.palette.color(QPalette::Base)));
+        const QRectF box(option.rect.left() + 8, option.rect.center().y() - 5.5, 12, 12);
+        paintVerdict(painter, box, value, mark);
+    }
     painter.setPen(ink);
     painter.drawText(QRectF(option.rect).adjusted(28, 0, -2, 0), Qt::AlignLeft | Qt::AlignVCenter, text);
 }

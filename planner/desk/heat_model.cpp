@@ -95,7 +95,7 @@ double HeatModel::sortValue(const Row& row) const {
 QString HeatModel::textAt(const Row& row, int column) const {
     switch (column) {
         case verdictColumn:
-            return row.judged ? word(row.judged->verdict) : QString();
+            return row.judged ? word(row.judged->verdict) : QStringLiteral("…");
         case heatColumn:
             return row.heat;
         case gradeColumn:

@@ -36,6 +36,8 @@ public:
     /// Shows what a certificate's file was read as and stores what the person agrees to.
     void importFile(const QString& path);
     void setFahrenheit(bool fahrenheit);
+    /// Writes the sheet of the answer at hand: the issued one, or a draft. `notices` is for the person at the screen.
+    Result<Done> writePdf(const QString& path, QStringList* notices = nullptr) const;
 
     HeatPanel* heats() const { return heats_; }
     Rail* rail() const { return rail_; }

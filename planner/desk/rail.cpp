@@ -29,12 +29,6 @@ QString compositionText(const std::map<std::string, double>& wt, size_t at_most)
     return words.join(QStringLiteral("  "));
 }
 
-/// "specification minimum 1040 °C" under "Floor 1040 °C" says the number twice and leaves no room for the words.
-QString withoutTemperature(const QString& cause, double celsius) {
-    const QString tail = QLatin1Char(' ') + celsiusText(celsius);
-    return cause.endsWith(tail) ? cause.chopped(tail.size()) : cause;
-}
-
 /// Gives each bracket the first lane, counted from the ribbons, in which it meets no other.
 void chooseLanes(std::vector<Ledge>& ledges) {
     constexpr int kLanes = 3;
@@ -55,7 +49,7 @@ RailLayout RailLayout::of(const QSizeF& size, const QFontMetricsF& font, double 
     const double axis = font.horizontalAdvance(QStringLiteral("8888")) + 22;
     const double top = kHead, height = size.height() - kHead - kFoot - legend_height;
     const double free = size.width() - 2 * axis - kBrackets - 2 * kGap;
-    const double label_width = std::clamp(0.4 * free, 130.0, 260.0);
+    const double label_width = std::clamp(0.43 * free, 140.0, 260.0);
     const double main_width = 0.62 * (free - label_width), minor_width = 0.38 * (free - label_width);
     RailLayout layout;
     double x = 0;
@@ -144,7 +138,7 @@ void Rail::collectLedges(const WindowAnswer& answer) {
             ledge.binding = first;
             ledge.at_C = *limit.temperature_C;
             ledge.uncertainty_K = limit.set ? 0 : limit.uncertainty_K;
-            ledge.cause = withoutTemperature(limit.cause, *limit.temperature_C);
+            ledge.cause = causeWithoutTemperature(limit);
             ledge.temperature = limitTemperature(limit, units_);
             ledges_.push_back(ledge);
             first = false;

@@ -266,7 +266,7 @@ void Rail::paintLedgeLabel(QPainter& painter, const Ledge& ledge) {
                                                        : QStringLiteral("\u2193 ");
     const QString what = ledge.side == Side::floor ? tr("Floor") : tr("Ceiling");
     QString head = arrow + what + QLatin1Char(' ') + ledge.temperature;
-    if (ledge.uncertainty_K > 0) head += QStringLiteral(" ± ") + units_.difference(ledge.uncertainty_K);
+    if (ledge.uncertainty_K > 0) head += QStringLiteral(" ±") + units_.difference(ledge.uncertainty_K);
     painter.setPen(ledge.binding ? ink : faded(ink, 0.72));
     painter.setFont(ledge.binding ? bolder(font()) : smaller(font()));
     const QFontMetricsF head_metrics(painter.font());

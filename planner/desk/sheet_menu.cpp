@@ -42,9 +42,9 @@ void addChoice(QMenu* menu, const QString& key, const QList<std::pair<QString, Q
     }
 }
 
-QString fileName(const SheetContent& content) {
-    const QString name = content.draft ? QStringLiteral("draft-") + content.heats.front().number
-                                       : content.number + QLatin1Char('-') + content.revision;
+QString fileName(const WindowAnswer& answer, const std::optional<SheetContent>& issued) {
+    const QString name =
+        issued ? issued->number + QLatin1Char('-') + issued->revision : QStringLiteral("draft-") + answer.heat;
     return QString(name).replace(QLatin1Char('/'), QLatin1Char('_')) + QStringLiteral(".pdf");
 }
 
@@ -140,18 +140,20 @@ void MainWindow::preview() {
     for (const QString& notice : prepared.value().notices) statusBar()->showMessage(notice);
 }
 
+Result<Done> MainWindow::writePdf(const QString& path, QStringList* notices) const {
+    if (!shown_) return Error{Fault::input, "there is no answer to make a sheet of: choose a heat first", {}, {}};
+    Result<SheetContent> content = sheetAtHand();
+    if (!content) return std::move(content).error();
+    return renderPdf(content.value(), optionsAtHand(), path, notices);
+}
+
 void MainWindow::savePdf() {
     if (!shown_) return;
-    Result<SheetContent> content = sheetAtHand();
-    if (!content) {
-        complain(tr("The sheet could not be made"), content.error());
-        return;
-    }
     const QString path =
-        QFileDialog::getSaveFileName(this, tr("Save sheet"), fileName(content.value()), tr("PDF (*.pdf)"));
+        QFileDialog::getSaveFileName(this, tr("Save sheet"), fileName(answer_, issued_), tr("PDF (*.pdf)"));
     if (path.isEmpty()) return;
     QStringList notices;
-    const Result<Done> written = renderPdf(content.value(), optionsAtHand(), path, &notices);
+    const Result<Done> written = writePdf(path, &notices);
     if (!written)
         complain(tr("The PDF was not written"), written.error());
     else

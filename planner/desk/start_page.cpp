@@ -57,7 +57,6 @@ void StartPage::setRecent(const QStringList& paths) {
         entry->setFlat(true);
         entry->setMinimumHeight(32);
         entry->setMaximumWidth(320);
-        entry->setStyleSheet(QStringLiteral("text-align: left; padding-left: 8px;"));
         connect(entry, &QPushButton::clicked, this, [this, path] { emit recentWanted(path); });
         recent_->addWidget(entry);
     }

@@ -34,6 +34,14 @@ QString Units::signedDifference(double kelvins) const {
     return kelvins > 0 ? QLatin1Char('+') + text : text;
 }
 
+QString unbroken(QString text) { return text.replace(QChar(0x2009), QChar(0x202f)); }
+
+QString causeWithoutTemperature(const Limit& limit) {
+    if (!limit.temperature_C) return limit.cause;
+    const QString tail = QLatin1Char(' ') + celsiusText(*limit.temperature_C);
+    return limit.cause.endsWith(tail) ? limit.cause.chopped(tail.size()) : limit.cause;
+}
+
 QString limitTemperature(const Limit& limit, const Units& units) {
     if (!limit.temperature_C) return QStringLiteral("–");
     // 1e-6: a limit that is a whole number already must not be pushed to the next by the last bit.

@@ -23,6 +23,10 @@ struct Units {
 
 /// A share, "0.31 %": the digits grow as it gets smaller, never more than two.
 QString percent(double fraction);
+/// The same text with every number kept on one line with its unit: thin spaces become narrow no-break spaces.
+QString unbroken(QString text);
+/// "specification minimum" for "specification minimum 1040 °C", where the temperature stands beside it anyway.
+QString causeWithoutTemperature(const Limit& limit);
 /// What is shown for a limit: floors rounded up, ceilings down, in the unit that is shown.
 QString limitTemperature(const Limit& limit, const Units& units);
 

@@ -1,5 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include <QComboBox>
+#include <QElapsedTimer>
+#include <QFile>
 #include <QSettings>
 #include <QSignalSpy>
 #include <QTableView>
@@ -9,6 +11,7 @@
 #include "db/demo.h"
 #include "planner/desk/answer_panel.h"
 #include "planner/desk/heat_panel.h"
+#include "planner/desk/import_dialog.h"
 #include "planner/desk/main_window.h"
 #include "planner/desk/rail.h"
 
@@ -99,6 +102,56 @@ private slots:
         window.openStore(path);
         QVERIFY(complained.wait(kPatience_ms));
         QVERIFY(complained[0][0].toString().contains("missing.soak"));
+    }
+
+    void all_numbers_follow_a_drag_at_30_pictures_a_second_or_better() {
+        MainWindow window;
+        window.resize(1366, 768);
+        open(window, QStringLiteral("D7718"), QStringLiteral("SA-22"), QStringLiteral("F2"));
+        window.show();
+        QCoreApplication::processEvents();
+        constexpr int kPictures = 60;
+        QElapsedTimer timer;
+        timer.start();
+        for (int i = 0; i < kPictures; ++i) {
+            QTest::keyClick(window.rail(), i % 20 < 10 ? Qt::Key_Up : Qt::Key_Down);
+            QCoreApplication::processEvents();
+        }
+        const double each_ms = double(timer.elapsed()) / kPictures;
+        qInfo("one step of the whole desk: %.2f ms", each_ms);
+        QVERIFY(each_ms < 1000.0 / 30);
+    }
+
+    void the_sheet_of_the_answer_is_written_as_a_PDF() {
+        MainWindow window;
+        QVERIFY(!window.writePdf(folder_.filePath(QStringLiteral("none.pdf"))));
+        open(window, QStringLiteral("K40217"), QStringLiteral("SA-300"), QStringLiteral("F2"));
+        const QString path = folder_.filePath(QStringLiteral("sheet.pdf"));
+        const Result<Done> written = window.writePdf(path);
+        QVERIFY2(written, written ? "" : written.error().text().c_str());
+        QFile file(path);
+        QVERIFY(file.open(QIODevice::ReadOnly));
+        QVERIFY(file.read(5) == "%PDF-");
+    }
+
+    void an_agreed_import_stands_in_the_list() {
+        const QString path = folder_.filePath(QStringLiteral("delivery.csv"));
+        QFile file(path);
+        QVERIFY(file.open(QIODevice::WriteOnly));
+        file.write("heat,grade,C,Si,Mn,Cr,Ni,N\n0007,1.4307,\"0,021\",0.4,1.5,18.2,8.1,0.06\n");
+        file.close();
+        MainWindow window;
+        open(window);
+        const int before = window.heats()->model()->rowCount();
+        QSignalSpy shown(&window, &MainWindow::storeShown);
+        window.importFile(path);
+        auto* dialog = window.findChild<ImportDialog*>();
+        QVERIFY(dialog);
+        dialog->accept();
+        QVERIFY(shown.wait(kPatience_ms));
+        window.heats()->stop();
+        QCOMPARE(window.heats()->model()->rowCount(), before + 1);
+        QVERIFY(window.heats()->choose(QStringLiteral("0007")));  // leading zeros survive
     }
 
     void it_fits_a_small_screen() {
