@@ -38,19 +38,34 @@ Result<State> AlloyReport::stateAt(double temperature_K) {
     return alloy_->stateAt(temperature_K);
 }
 
-Result<Event> AlloyReport::crossingOfFraction(const std::string& label, double fraction, double from_K, double to_K) {
+Result<Event> AlloyReport::solved(const std::string& what, double value, double from_K, double to_K,
+                                  const std::function<Result<Event>()>& solve) {
     if (!alloy_) return noEngine();
-    return alloy_->temperatureOfFraction(label, fraction, from_K, to_K);
+    const std::string key =
+        what + " " + std::to_string(value) + " " + std::to_string(from_K) + " " + std::to_string(to_K);
+    if (const auto known = solved_.find(key); known != solved_.end()) return known->second;
+    auto event = solve();
+    if (event) solved_[key] = event.value();
+    return event;
+}
+
+Result<Event> AlloyReport::crossingOfFraction(const std::string& label, double fraction, double from_K, double to_K) {
+    return solved("fraction " + label, fraction, from_K, to_K,
+                  [&] { return alloy_->temperatureOfFraction(label, fraction, from_K, to_K); });
 }
 
 Result<Event> AlloyReport::crossingOfContent(const std::string& element, double content_wt, double from_K,
                                              double to_K) {
-    if (!alloy_) return noEngine();
-    return alloy_->temperatureOfMatrixContent(element, content_wt, from_K, to_K);
+    return solved("content " + element, content_wt, from_K, to_K,
+                  [&] { return alloy_->temperatureOfMatrixContent(element, content_wt, from_K, to_K); });
 }
 
-Result<Event> AlloyReport::crossing(const Quantity& quantity, double value, double from_K, double to_K) {
-    if (!alloy_) return noEngine();
+Result<Event> AlloyReport::crossing(const std::string& name, const Quantity& quantity, double value, double from_K,
+                                    double to_K) {
+    return solved(name, value, from_K, to_K, [&] { return solve(quantity, value, from_K, to_K); });
+}
+
+Result<Event> AlloyReport::solve(const Quantity& quantity, double value, double from_K, double to_K) {
     Error failure;
     const auto missAt = [&](double T) -> std::optional<double> {
         const auto state = alloy_->stateAt(T);

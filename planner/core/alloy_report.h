@@ -20,18 +20,24 @@ public:
 
     /// The temperature between two others where `quantity` of the state equals `value`; it must lie on both sides at
     /// the ends. To 0.01 K by bisection and secants. With sensitivities dT/d(wt%) by central differences of the state.
+    /// `name` tells quantities apart: what was solved once is not solved again for the next furnace.
     using Quantity = std::function<double(const State&)>;
-    Result<Event> crossing(const Quantity& quantity, double value, double from_K, double to_K);
+    Result<Event> crossing(const std::string& name, const Quantity& quantity, double value, double from_K, double to_K);
     /// The same for one label's volume fraction and for an element's content of the matrix, with exact derivatives.
     Result<Event> crossingOfFraction(const std::string& label, double fraction, double from_K, double to_K);
     Result<Event> crossingOfContent(const std::string& element, double content_wt, double from_K, double to_K);
     Result<State> stateAt(double temperature_K);
 
 private:
+    Result<Event> solved(const std::string& what, double value, double from_K, double to_K,
+                         const std::function<Result<Event>()>& solve);
+    Result<Event> solve(const Quantity& quantity, double value, double from_K, double to_K);
+
     std::shared_ptr<const DataSet> data_;
     PhaseChoice choice_;
     std::unique_ptr<Alloy> alloy_;
     Sweep sweep_;
+    std::map<std::string, Event> solved_;
 };
 
 }  // namespace soak

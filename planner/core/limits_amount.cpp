@@ -110,9 +110,10 @@ std::vector<Limit> between(const CycleLimit& limit, const Bounded& bounded, cons
 }
 
 /// By bisection on the quantity itself.
-auto generalSolution(AlloyReport* report, const std::function<double(const State&)>& quantity) {
-    return [report, quantity](double value, const State& below, const State& above) {
-        return report->crossing(quantity, value, below.temperature_K, above.temperature_K);
+auto generalSolution(AlloyReport* report, const std::string& name,
+                     const std::function<double(const State&)>& quantity) {
+    return [report, name, quantity](double value, const State& below, const State& above) {
+        return report->crossing(name, quantity, value, below.temperature_K, above.temperature_K);
     };
 }
 
@@ -126,7 +127,8 @@ std::vector<Limit> fractionLimit(const CycleLimit& limit, const LimitContext& co
         return sum;
     };
     // One label alone has an exact solution; a group of them at once is solved by bisection.
-    const auto solve = [labels, report = context.report, general = generalSolution(context.report, percent)](
+    const auto solve = [labels, report = context.report,
+                        general = generalSolution(context.report, limit.phase.toStdString(), percent)](
                            double value, const State& below, const State& above) {
         std::vector<std::string> present;
         for (const QString& label : labels)
@@ -158,7 +160,7 @@ std::vector<Limit> retainedAusteniteLimit(const CycleLimit& limit, const LimitCo
     const auto retained = [](const State& state) { return retainedAustenite_vol(state, kQuenchedTo_C); };
     auto made = between(limit,
                         {retained, kNoLow, limit.high.value_or(kNoHigh), "retained austenite", "vol%", false,
-                         generalSolution(context.report, retained)},
+                         generalSolution(context.report, "retained austenite", retained)},
                         context);
     for (Limit& one : made)
         if (one.temperature_C) one.remark = kRetainedAusteniteSource;
