@@ -7,6 +7,7 @@
 namespace soak::desk {
 
 HeatModel::HeatModel(QObject* parent) : QAbstractTableModel(parent) {
+    workers_.setThreadPriority(QThread::LowPriority);  // the window comes first
     connect(&watcher_, &QFutureWatcherBase::resultsReadyAt, this, &HeatModel::append);
     connect(&watcher_, &QFutureWatcherBase::progressValueChanged, this,
             [this](int done) { emit progress(done, watcher_.progressMaximum()); });
@@ -43,7 +44,7 @@ void HeatModel::judgeAll() {
         for (TriageRow& row : rows) row.item = item;
         return rows;
     };
-    watcher_.setFuture(QtConcurrent::mapped(std::move(items), judge_one));
+    watcher_.setFuture(QtConcurrent::mapped(&workers_, std::move(items), judge_one));
 }
 
 void HeatModel::append(int begin, int end) {

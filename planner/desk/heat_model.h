@@ -3,6 +3,7 @@
 #include <QAbstractTableModel>
 #include <QFutureWatcher>
 #include <QSortFilterProxyModel>
+#include <QThreadPool>
 #include <memory>
 #include <vector>
 
@@ -61,6 +62,7 @@ private:
 
     std::shared_ptr<const DeskData> data_;
     std::vector<Row> rows_;
+    QThreadPool workers_;  // not the global pool: Qt paints with that one, and would wait behind the heats
     QFutureWatcher<Rows> watcher_;
     Units units_;
 };

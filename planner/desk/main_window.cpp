@@ -72,7 +72,7 @@ MainWindow::MainWindow(QWidget* parent)
     bench_->setStretchFactor(0, 0);
     bench_->setStretchFactor(1, 1);
     bench_->setStretchFactor(2, 0);
-    bench_->setSizes({440, 530, 396});
+    bench_->setSizes({456, 520, 390});
     bench_->setChildrenCollapsible(false);
     pages_->addWidget(start_);
     pages_->addWidget(bench_);
@@ -147,8 +147,8 @@ void MainWindow::openStore(const QString& path, const QString& heat, const QStri
     statusBar()->showMessage(tr("Opening %1…").arg(path));
     setEnabled(false);
     const QDate today = QDate::currentDate();
-    loading_.setFuture(
-        QtConcurrent::run([path, today] { return std::make_shared<Result<DeskData>>(loadDesk(path, today)); }));
+    loading_.setFuture(QtConcurrent::run(
+        &loader_, [path, today] { return std::make_shared<Result<DeskData>>(loadDesk(path, today)); }));
 }
 
 void MainWindow::storeLoaded() {

@@ -2,6 +2,7 @@
 #pragma once
 #include <QFutureWatcher>
 #include <QMainWindow>
+#include <QThreadPool>
 #include <memory>
 
 #include "desk_data.h"
@@ -98,6 +99,7 @@ private:
     Wish wish_;
     Units units_;
     Judge judge_;
+    QThreadPool loader_;
     QFutureWatcher<std::shared_ptr<Result<DeskData>>> loading_;
 
     QStackedWidget* pages_;

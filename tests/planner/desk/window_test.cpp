@@ -122,6 +122,17 @@ private slots:
         QVERIFY(each_ms < 1000.0 / 30);
     }
 
+    void painting_never_waits_for_the_heats_that_are_being_judged() {
+        // Qt paints large areas with the global thread pool: heats that fill it would stop the window.
+        MainWindow window;
+        QSignalSpy shown(&window, &MainWindow::storeShown);
+        window.openStore(store_);
+        QVERIFY(shown.wait(kPatience_ms));
+        QVERIFY(window.heats()->model()->isJudging());
+        QCOMPARE(QThreadPool::globalInstance()->activeThreadCount(), 0);
+        window.heats()->stop();
+    }
+
     void the_sheet_of_the_answer_is_written_as_a_PDF() {
         MainWindow window;
         QVERIFY(!window.writePdf(folder_.filePath(QStringLiteral("none.pdf"))));
