@@ -100,9 +100,9 @@ QString asText(const std::vector<TriageRow>& rows) {
     QString text;
     for (const TriageRow& row : rows) {
         const QString margin = row.margin_K ? withUnit(std::floor(*row.margin_K), "K") : QString("-");
-        text += row.heat.leftJustified(12) + row.grade.leftJustified(10) + row.cycle.leftJustified(8) +
-                row.furnace.leftJustified(4) + word(row.verdict).leftJustified(14) + margin.rightJustified(8) + "  " +
-                (row.grade_verdict.isEmpty() ? "" : "grade " + row.grade_verdict) + "\n    " + row.reason + "\n";
+        text += row.heat.leftJustified(11) + " " + row.grade.leftJustified(9) + " " + row.cycle.leftJustified(7) + " " +
+                row.furnace.leftJustified(3) + " " + word(row.verdict).leftJustified(13) + margin.rightJustified(8) +
+                "  " + (row.grade_verdict.isEmpty() ? "" : "grade " + row.grade_verdict) + "\n    " + row.reason + "\n";
         for (const QString& finding : row.findings) text += "    - " + finding + "\n";
     }
     return text;

@@ -49,9 +49,14 @@ std::vector<Caution> cautionsFor(const std::vector<Caution>& all, const Cycle& c
         if (subjects.contains(caution.applies_to)) special.push_back(caution);
         if (caution.applies_to == "treatment: any") general.push_back(caution);
     }
-    const auto worse = [](const Caution& a, const Caution& b) { return rankOf(a.severity) < rankOf(b.severity); };
+    // Of equal danger the shorter line comes first: it is the one that is read.
+    const auto worse = [](const Caution& a, const Caution& b) {
+        return std::pair(rankOf(a.severity), a.text.size()) < std::pair(rankOf(b.severity), b.text.size());
+    };
     std::stable_sort(special.begin(), special.end(), worse);
-    std::stable_sort(general.begin(), general.end(), worse);
+    // The table's own order holds for the general ones: over-temperature protection stands first.
+    std::stable_sort(general.begin(), general.end(),
+                     [](const Caution& a, const Caution& b) { return rankOf(a.severity) < rankOf(b.severity); });
     // One place is kept for what holds at every furnace.
     std::vector<Caution> chosen;
     for (const Caution& caution : special)

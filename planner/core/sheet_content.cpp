@@ -14,7 +14,7 @@
 namespace soak {
 namespace {
 
-constexpr std::size_t kMostCautions = 4;  // what fits on one page beside the work
+constexpr std::size_t kMostCautions = 2;  // what fits on one page beside the work
 const QString kLoadSensor = "LT1";
 
 /// Rounds both units on their own, the same safe way.
@@ -84,35 +84,35 @@ void fillSoak(SheetContent& sheet, const SheetRequest& request, const UnitsOf& u
     }
 }
 
+/// One line each for the medium and for the limits that bind here: the cycle's own before the facility's.
 void fillQuench(SheetContent& sheet, const SheetRequest& request) {
-    sheet.cooling = request.job.cycle.cooling;
-    if (const Quench* quench = quenchFor(request)) {
-        sheet.quench_medium = quench->id + ", " + quench->medium;
-        if (!quench->limits.isEmpty()) sheet.medium_limits << quench->limits;
-        if (quench->transfer_max_s > 0)
-            sheet.medium_limits << QString("door to fully under takes %1 as measured")
-                                       .arg(quench->transfer_min_s < quench->transfer_max_s
-                                                ? number(quench->transfer_min_s) + " to " +
-                                                      withUnit(quench->transfer_max_s, "s")
-                                                : withUnit(quench->transfer_max_s, "s"));
-    }
-    if (!request.job.cycle.note.isEmpty()) sheet.medium_limits << request.job.cycle.note;
+    const Quench* quench = quenchFor(request);
+    if (quench) sheet.quench_medium = quench->id + ", " + quench->medium;
+    if (!quench) sheet.cooling = request.job.cycle.cooling;
+    if (!request.job.cycle.note.isEmpty())
+        sheet.medium_limits << request.job.cycle.note;
+    else if (quench && !quench->limits.isEmpty())
+        sheet.medium_limits << quench->limits;
+    if (quench && quench->transfer_max_s > 0)
+        sheet.medium_limits
+            << QString("door to fully under took at most %1 when measured").arg(withUnit(quench->transfer_max_s, "s"));
 }
 
 void fillWhy(SheetContent& sheet, const SheetRequest& request, const UnitsOf& units) {
     const WindowAnswer& answer = request.answer;
     sheet.verdict = answer.verdict;
-    sheet.verdict_sentence = answer.reason;
+    // The heading beside it says the verdict's word already.
+    sheet.verdict_sentence = answer.reason.section(": ", 1);
+    if (!sheet.verdict_sentence.isEmpty()) sheet.verdict_sentence[0] = sheet.verdict_sentence[0].toUpper();
     if (answer.margin_K) sheet.margin = units.difference(*answer.margin_K, down);
     sheet.binding = bindingLimits(answer, units);
     if (answer.low_C) sheet.window_low = units.temperature(*answer.low_C, up);
     if (answer.high_C) sheet.window_high = units.temperature(*answer.high_C, down);
-    sheet.decision_rule = QString(
-                              "inside: the whole band (%1) within the window, at least %2 from limits that are set and "
-                              "at least %3 or one "
-                              "standard uncertainty from computed ones; less is tight")
-                              .arg(answer.band.rule, withUnit(request.rules.tight_set_K, "K"),
-                                   withUnit(request.rules.tight_computed_K, "K"));
+    sheet.decision_rule =
+        QString(
+            "the whole band fits; margin at least %1 where people set the limit, else %2 or one "
+            "standard uncertainty")
+            .arg(withUnit(request.rules.tight_set_K, "K"), withUnit(request.rules.tight_computed_K, "K"));
     sheet.grade_check = answer.grade_check.verdict;
     for (const Finding& finding : answer.grade_check.findings) {
         const bool worth_paper = finding.fails || finding.source == "suggestion" || finding.text.contains("missing");
@@ -135,10 +135,9 @@ void fillFurnace(SheetContent& sheet, const SheetRequest& request, const UnitsOf
     sheet.metal_high = units.temperature(answer.band.high_C, up);
     sheet.band_rule = answer.band.rule;
     if (answer.high_C) sheet.never_above = units.temperature(*answer.high_C, down);
-    if (furnace.maximum_load_kg > 0) sheet.load_notes << "at most " + withUnit(furnace.maximum_load_kg, "kg");
-    sheet.load_notes << "nothing touches: pieces, walls, elements";
-    sheet.thermocouple_notes << kLoadSensor + " in the slowest piece, thickest section";
-    sheet.thermocouple_notes << "compare with an independent reading at first soak";
+    if (furnace.maximum_load_kg > 0)
+        sheet.load_notes << "at most " + withUnit(furnace.maximum_load_kg, "kg") + ", pieces apart";
+    sheet.thermocouple_notes << "compare " + kLoadSensor + " with an independent reading";
     if (!furnace.work_zone_mm.isEmpty()) {
         LoadSketch sketch;
         sketch.round = request.job.heat.product_form != "plate";

@@ -11,6 +11,8 @@
 namespace soak {
 namespace {
 
+constexpr int kShownHash = 12;  // digits that people compare; the code carries all of them
+
 QJsonArray list(const QStringList& lines) { return QJsonArray::fromStringList(lines); }
 
 QJsonObject json(const Quantity& quantity) {
@@ -113,7 +115,8 @@ Result<SheetContent> draftSheet(const Store& store, const WindowAnswer& answer, 
     if (const Grade* row = mainRow(job.heat, grades.value()))
         request.specification = row->edition == "unknown" ? row->standard : row->standard + ":" + row->edition;
     SheetContent content = makeSheet(request);
-    content.content_hash = QCryptographicHash::hash(sheetJson(content), QCryptographicHash::Sha256).toHex();
+    content.content_hash =
+        QCryptographicHash::hash(sheetJson(content), QCryptographicHash::Sha256).toHex().left(kShownHash);
     return content;
 }
 
@@ -144,8 +147,8 @@ Result<SheetContent> issueSheet(Store& store, const WindowAnswer& answer, const 
     content.number = stored.value().number;
     content.revision = stored.value().revision;
     content.replaces = stored.value().replaces;
-    content.content_hash = stored.value().hash;
-    content.qr_payload = QString("soakwright:%1:%2:%3").arg(content.number, content.revision, content.content_hash);
+    content.content_hash = stored.value().hash.left(kShownHash);
+    content.qr_payload = QString("soakwright:%1:%2:%3").arg(content.number, content.revision, stored.value().hash);
     return content;
 }
 

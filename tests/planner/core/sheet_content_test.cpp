@@ -1,0 +1,111 @@
+// SPDX-License-Identifier: GPL-3.0-or-later
+#include <catch2/catch.hpp>
+
+#include "heats.h"
+#include "planner/core/cautions.h"
+#include "planner/core/sheet_issue.h"
+#include "planner/core/verdict.h"
+#include "shop.h"
+
+using namespace soak;
+
+namespace {
+
+/// A made-up answer of F4 at 1030 °C: floor 1000.2, ceiling 1060.8, both computed.
+SheetRequest request() {
+    SheetRequest made;
+    made.rules = shop::rules();
+    made.job.furnace = shop::furnace("F4");
+    made.job.furnace.quenches = {"G1"};
+    made.job.heat = shop::heat("ESR-1188A", "1.2379", "bar", "C 1.53, Cr 11.82");
+    made.job.heat.section_mm = 80;
+    made.job.cycle.name = "H-D2";
+    made.job.cycle.kind = "harden";
+    made.job.cycle.quenches = {"O1", "G1"};
+    made.job.cycle.soak_base_min = 30;
+    made.job.cycle.soak_per_25mm_min = 60;
+    made.job.cycle.soak_free_mm = 25;
+    made.quenches = {{"O1", "oil", "F5", 8, 8, ""}, {"G1", "nitrogen, 6 bar", "F4", 0, 0, ""}};
+    Limit floor, ceiling;
+    floor.cause = "C in the matrix at least 0.45\u2009wt%";
+    floor.temperature_C = 1000.2;
+    ceiling.side = Side::ceiling;
+    ceiling.cause = "C in the matrix at most 0.75\u2009wt%";
+    ceiling.temperature_C = 1060.8;
+    made.answer.floors = {floor};
+    made.answer.ceilings = {ceiling};
+    made.answer.setpoint_C = 1030;
+    made.answer.grade_check.verdict = "passes";
+    made.answer.band = bandOrSetpoint(made.job.furnace, 1030, made.rules).value();
+    decide(made.answer, made.job.furnace, made.rules);
+    return made;
+}
+
+}  // namespace
+
+TEST_CASE("a sheet rounds the safe way, in the controller's unit first") {
+    const SheetContent sheet = makeSheet(request());
+    CHECK(sheet.setpoint.controller.value == 1886);
+    CHECK(sheet.setpoint.other->value == 1030);
+    // 1000.2 degC = 1832.36 degF up, 1060.8 degC = 1941.44 degF down
+    CHECK(sheet.window_low->controller.value == 1833);
+    CHECK(sheet.window_low->other->value == 1001);
+    CHECK(sheet.window_high->controller.value == 1941);
+    CHECK(sheet.window_high->other->value == 1060);
+    CHECK(sheet.never_above->controller.value == 1941);
+    const Band& band = request().answer.band;
+    CHECK(sheet.metal_low.other->value == std::floor(band.low_C));
+    CHECK(sheet.metal_high.other->value == std::ceil(band.high_C));
+}
+
+TEST_CASE("soak minutes come from the governing section; without a section the crew gets a blank and the rule") {
+    SheetRequest with_section = request();
+    CHECK(*makeSheet(with_section).soak_minutes == 30 + 132);  // 60 min * (80 - 25) / 25
+    with_section.job.heat.section_mm.reset();
+    CHECK_FALSE(makeSheet(with_section).soak_minutes);
+}
+
+TEST_CASE("the quench is one that this furnace can reach") {
+    CHECK(makeSheet(request()).quench_medium == "G1, nitrogen, 6 bar");
+}
+
+TEST_CASE("what stands in the way of an issued sheet") {
+    SheetRequest made = request();
+    REQUIRE(made.answer.verdict == Verdict::inside);
+    CHECK(obstaclesToIssue(made.answer).isEmpty());
+    made.answer.grade_check.verdict = "fails";
+    CHECK(obstaclesToIssue(made.answer).join(' ').contains("grade check: fails"));
+    made = request();
+    made.answer.verdict = Verdict::outside;
+    CHECK(obstaclesToIssue(made.answer) == QStringList{"verdict outside"});
+    CHECK(makeSheet(made).draft);
+    CHECK(makeSheet(made).draft_reasons == QStringList{"verdict outside"});
+}
+
+TEST_CASE("cautions follow medium, furnace and treatment, dangers first, and stay few") {
+    const std::vector<Caution> all = readCautions(libraryFolder()).value();
+    Cycle anneal;
+    anneal.kind = "solution-anneal";
+    Furnace electric;
+    electric.kind = "chamber, electric";
+    const auto chosen = cautionsFor(all, anneal, "austenitic", electric, "W2, water", 1060, 5);
+    REQUIRE(chosen.size() == 5);
+    CHECK(chosen.front().severity == "danger");
+    bool water = false, oil = false, general = false;
+    for (const Caution& caution : chosen) {
+        water = water || caution.applies_to == "medium: water quench";
+        oil = oil || caution.applies_to == "medium: oil quench";
+        general = general || caution.applies_to == "treatment: any";
+    }
+    CHECK(water);
+    CHECK(general);
+    CHECK_FALSE(oil);
+}
+
+TEST_CASE("a sheet's JSON changes with its contents") {
+    const SheetContent sheet = makeSheet(request());
+    SheetContent other = sheet;
+    other.setpoint.controller.value += 5;
+    CHECK(sheetJson(sheet) == sheetJson(makeSheet(request())));
+    CHECK(sheetJson(sheet) != sheetJson(other));
+}
