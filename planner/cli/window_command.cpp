@@ -58,6 +58,21 @@ Result<Heat> typedHeat(const Arguments& arguments, QString* balance) {
     return heat;
 }
 
+/// The set named by --set takes the place of the family's own; a written balance element must be the set's.
+Result<Done> chooseFamilyData(const Arguments& arguments, const Family& family, const QString& balance, Shelf& shelf) {
+    auto& data = shelf.data_sets.at(family.data_set);
+    if (!arguments.text("set").isEmpty()) {
+        auto named = chooseDataSet(arguments, balance);
+        if (!named) return std::move(named).error();
+        data = std::move(named).value();
+    }
+    const QString of_set = QString::fromStdString(facts(*data).balance);
+    if (!balance.isEmpty() && balance != of_set)
+        return refuse("the family \"" + family.name + "\" is judged with data for alloys of " + of_set + ", not of " +
+                      balance);
+    return Done{};
+}
+
 /// Names in the store and typed values together make the question.
 Result<Job> jobFor(const Arguments& arguments, Shelf& shelf, const Store* store) {
     Job job;
@@ -92,13 +107,8 @@ Result<Job> jobFor(const Arguments& arguments, Shelf& shelf, const Store* store)
         if (!furnace) return std::move(furnace).error();
         job.furnace = std::move(furnace).value();
     }
-    // A set named by --set, or written by its balance element, takes the place of the family's own.
-    if (const Family* family = shelf.book.find(familyOf(job, shelf));
-        family && (!balance.isEmpty() || !arguments.text("set").isEmpty())) {
-        auto data = chooseDataSet(arguments, balance);
-        if (!data) return std::move(data).error();
-        shelf.data_sets[family->data_set] = std::move(data).value();
-    }
+    if (const Family* family = shelf.book.find(familyOf(job, shelf)))
+        if (auto fits = chooseFamilyData(arguments, *family, balance, shelf); !fits) return std::move(fits).error();
     return job;
 }
 

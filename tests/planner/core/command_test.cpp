@@ -163,6 +163,9 @@ TEST_CASE("window refuses what it cannot judge, and says so") {
     CHECK(soakwright({"window", "--wt", "C=0.02,Cr=18", "--family", "cheese"}).status == 2);
     CHECK(soakwright({"window", "--wt", "C=0.02,Cr=18"}).status == 2);
     CHECK(soakwright({"window", "--heat", "K40217", "--cycle", "SA-300", "--furnace", "F2"}).status == 2);
+    const Run aluminium = soakwright({"window", "--wt", "Al=bal,Cu=4", "--family", "austenitic"});
+    CHECK(aluminium.status == 2);
+    CHECK(aluminium.err.contains("not of Al"));
     const Run fahrenheit =
         soakwright({"window", "--wt", "C=0.02,Cr=18,Ni=8", "--family", "austenitic", "--setpoint", "1886"});
     CHECK(fahrenheit.status == 2);
