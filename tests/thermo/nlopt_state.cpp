@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <cmath>
 #include <exception>
+#include <limits>
 #include <nlopt.hpp>
 
 #include "base/units.h"
@@ -12,6 +13,7 @@ namespace soak::test {
 namespace {
 
 constexpr double kLeast = 1e-9;  // lower bound of a variable
+constexpr int kRuns = 20;        // of the optimiser, each from where the last one stopped
 
 /// Variables: of each set its amount n, then z = sqrt(y) of its site fractions. In z the curvature of ideal mixing is
 /// the same for rich and dilute constituents, which a quasi-Newton method needs to get anywhere with traces.
@@ -108,16 +110,29 @@ NloptState minimizeWithNlopt(const System& system, const Eigen::VectorXd& b, dou
     optimizer.add_equality_mconstraint(balances, &problem, std::vector<double>(problem.constraints, 1e-10));
     optimizer.set_ftol_rel(1e-12);
     optimizer.set_maxeval(1000);
-    double value = 0;
-    try {
-        optimizer.optimize(x, value);
-    } catch (const std::exception&) {  // limited by rounding: the last point is as good as it gets
-        if (!problem.best.empty()) x = problem.best;
+    std::vector<double> lack(problem.constraints);
+    // SLSQP often stops early, limited by rounding; from where it stopped it goes on. Two runs in a row that agree, and
+    // hold the balances, end it.
+    double last = std::numeric_limits<double>::infinity();
+    for (int run = 0; run < kRuns; ++run) {
+        double value = 0;
+        try {
+            optimizer.optimize(x, value);
+        } catch (const std::exception&) {
+            if (!problem.best.empty()) x = problem.best;
+        }
+        value = objective(static_cast<unsigned>(x.size()), x.data(), nullptr, &problem);
+        balances(static_cast<unsigned>(problem.constraints), lack.data(), static_cast<unsigned>(x.size()), x.data(),
+                 nullptr, &problem);
+        const auto [least, most] = std::minmax_element(lack.begin(), lack.end());
+        if (std::abs(value - last) < 1e-9 && *most < 1e-8 && *least > -1e-8) break;
+        last = value;
+        for (double& v : x) v = std::clamp(v, kLeast, 1.0);
     }
 
     NloptState state;
     state.evaluations = problem.evaluations;
-    Eigen::VectorXd lack = b, amounts(b.size());
+    Eigen::VectorXd missing = b, amounts(b.size());
     for (size_t s = 0; s < start.size(); ++s) {
         PhaseSet set = start[s];
         const PhaseModel& model = problem.model(s);
@@ -131,11 +146,11 @@ NloptState minimizeWithNlopt(const System& system, const Eigen::VectorXd& b, dou
         }
         set.atoms = model.amounts(set.y.data(), amounts.data(), static_cast<int>(b.size()));
         set.gibbs = model.gibbs(problem.at.data(), T, set.y.data());
-        lack -= set.n * amounts;
+        missing -= set.n * amounts;
         state.gibbs += set.n * set.gibbs;
         state.sets.push_back(set);
     }
-    state.imbalance = lack.cwiseAbs().maxCoeff();
+    state.imbalance = missing.cwiseAbs().maxCoeff();
     return state;
 }
 
