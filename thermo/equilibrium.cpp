@@ -257,6 +257,7 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
             M(last, last) -= set.n * weight.dot(W.transpose() * wT);
             rhs[last] += set.n * weight.dot(W.transpose() * w0) - set.n * weight.dot(a);
         }
+        if (!M.allFinite() || !rhs.allFinite()) return false;
         // Scaled so that a trace element's row weighs as much as iron's.
         scale.setOnes(size);
         for (int e = 0; e < elements; ++e) scale[e] = 1 / std::sqrt(std::max(M(e, e), 1e-3 * b_[e] / (kGas * p.T)));
@@ -291,9 +292,27 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
             x *= 40 / std::abs(dT);
             dT = x[size - 1];
         }
-        double largest = 0, largestN = 0;
+        // An amount that would turn negative stops the step short of zero; a set that does so again leaves.
+        double largest = 0, largestN = 0, reach = 1;
         bool guarded = false;
-        for (int s = 0; s < sets; ++s) {
+        int leaving = -1;
+        for (int s = 0; s < sets && !condition; ++s) {
+            const double n = p.sets[static_cast<size_t>(s)].n, dn = x[elements + s];
+            if (n + dn >= 0) continue;
+            guarded = true;
+            if (n < 1e-11) {
+                leaving = s;
+                reach = 0;
+                break;
+            }
+            const bool again = ++negative[static_cast<size_t>(s)] >= 3;
+            const double most = (again ? 1.0 : 0.9) * n / -dn;
+            if (most >= reach) continue;
+            reach = most;
+            leaving = again ? s : -1;
+        }
+        x *= reach;
+        for (int s = 0; s < sets && reach > 0; ++s) {
             PhaseSet& set = p.sets[static_cast<size_t>(s)];
             const PhaseModel& model = models[static_cast<size_t>(set.phase)];
             const Local& local = locals[static_cast<size_t>(s)];
@@ -301,8 +320,8 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
             double dz[kMost];
             for (int c = 0; c < n; ++c) {
                 double sum = -local.w0[c] - local.wT[c] * (condition ? dT : 0);
-                for (int e = 0; e < elements; ++e) sum += local.W[c * elements + e] * x[e];
-                dz[c] = sum;
+                for (int e = 0; e < elements; ++e) sum += local.W[c * elements + e] * x[e] / reach;
+                dz[c] = sum * reach;
             }
             local.backward(dz, n);
             double change = 0, alpha = 1;
@@ -319,23 +338,17 @@ bool Solver::refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db
             move(model, dz, alpha, set.y.data());
             const double dn = x[elements + s];
             largestN = std::max(largestN, std::abs(dn) * local.atoms);
-            if (set.n + dn < 0 && !condition) {
-                ++negative[static_cast<size_t>(s)];
-                guarded = true;
-                set.n = set.n > 1e-9 && negative[static_cast<size_t>(s)] < 3 ? 0.1 * set.n : -1;
-            } else {
-                set.n += dn;
-            }
+            set.n += dn;
         }
         p.mu += x.head(elements);
         p.T += dT;
         if (p.T < 200 || p.T > 6000) return false;
-        for (size_t s = p.sets.size(); s-- > 0;)
-            if (p.sets[s].n < 0 && !condition && p.sets.size() > 1) {
-                p.minima.push_back({p.sets[s], 0});  // it may come back: the proof watches it from here on
-                p.sets.erase(p.sets.begin() + static_cast<long>(s));
-                negative.erase(negative.begin() + static_cast<long>(s));
-            }
+        if (leaving >= 0) {
+            if (p.sets.size() == 1) return false;
+            p.minima.push_back({p.sets[static_cast<size_t>(leaving)], 0});  // it may come back: the proof watches it
+            p.sets.erase(p.sets.begin() + leaving);
+            negative.erase(negative.begin() + leaving);
+        }
         if (!condition)  // two sets that have run into each other are one
             for (size_t s = 0; s < p.sets.size(); ++s)
                 for (size_t t = p.sets.size(); t-- > s + 1;) {
@@ -661,7 +674,7 @@ Point Solver::coldStart(double T) {
     std::vector<PhaseSet> extra;
     addOverall(extra, T);
     Hull hull;
-    solveHull(hull, extra, true);
+    if (!solveHull(hull, extra, true)) return p;
     p.sets = setsOf(hull, extra, system_->samples().count());
     mergeSets(p.sets, T);
     p.mu = hull.mu;
@@ -732,27 +745,35 @@ bool Solver::stands(const Point& p) const {
 }
 
 bool Solver::converge(Point& p, bool thorough) {
-    double last = std::numeric_limits<double>::infinity();
-    int stalls = 0;
+    Point best;  // the lowest point so far, with what wants to enter it
+    std::vector<Minimum> entering;
+    size_t tried = 0;  // how many of these have led nowhere
     bool assured = !thorough;
-    for (int round = 0; round < 40; ++round) {
-        if (!refine(p, nullptr, nullptr) || !stands(p)) return false;
-        if (p.gibbs > last - 1e-9 && ++stalls > 3) return false;
-        last = std::min(last, p.gibbs);
-        // Until the answer stands, a light search is enough to see what enters; then the thorough one confirms.
-        prove(p, thorough && assured);
-        std::vector<Minimum> entering = violators(p);
-        if (entering.empty()) {
-            if (assured) return true;
-            prove(p, true);
+    for (int round = 0; round < 60; ++round) {
+        const bool refined = refine(p, nullptr, nullptr) && stands(p);
+        if (round == 0 && !refined) return false;
+        if (refined && (best.sets.empty() || p.gibbs < best.gibbs - 1e-9)) {
+            // Until the answer stands, a light search is enough to see what enters; then the thorough one confirms.
+            prove(p, thorough && assured);
             entering = violators(p);
+            if (entering.empty() && !assured) {
+                prove(p, true);
+                entering = violators(p);
+            }
             if (entering.empty()) return true;
+            best = p;
+            tried = 0;
+        } else {
+            p = best;
+            ++tried;
         }
+        if (tried >= std::min<size_t>(entering.size(), 8)) return false;
         if (static_cast<int>(p.sets.size()) >= system_->elementCount()) {
-            if (!exchange(p, entering)) return false;
+            // No room: the new set can only take another's place.
+            if (!exchange(p, {entering.begin() + static_cast<long>(tried), entering.end()})) return false;
             continue;
         }
-        PhaseSet set = entering.front().set;
+        PhaseSet set = entering[tried].set;
         set.n = 0;
         p.sets.push_back(set);
     }

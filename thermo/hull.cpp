@@ -1,12 +1,15 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "hull.h"
 
+#include <algorithm>
 #include <cmath>
 
 namespace soak {
 namespace {
 
 constexpr double kArtificial = 1e6;  // J/mol: far above every G at hand
+constexpr double kImproves = 1e-5;  // J/mol of atoms: a column that lies less below the plane is on it, within rounding
+constexpr double kSmallPivot = 1e-9;  // share of the largest entry of a direction below which a pivot is rounding
 
 }  // namespace
 
@@ -19,7 +22,7 @@ void Hull::solve(const Eigen::VectorXd& b, const Block& first, const Block& seco
     Eigen::VectorXd priced, direction(rows), column(rows);
     for (int turn = 0; turn < 600; ++turn) {
         mu.noalias() = inverse.transpose() * cost;
-        double best = -1e-9;
+        double best = -kImproves;
         int entering = -1;
         int offset = 0;
         for (const Block* block : {&first, &second}) {
@@ -36,7 +39,7 @@ void Hull::solve(const Eigen::VectorXd& b, const Block& first, const Block& seco
             }
             offset += static_cast<int>(block->count);
         }
-        if (entering < 0) break;
+        if (entering < 0 || std::find(basis.begin(), basis.end(), entering) != basis.end()) break;
         const bool inFirst = entering < first.count;
         const Block& block = inFirst ? first : second;
         const Eigen::Index at = inFirst ? entering : entering - first.count;
@@ -44,11 +47,13 @@ void Hull::solve(const Eigen::VectorXd& b, const Block& first, const Block& seco
         direction.noalias() = inverse * column;
         double ratio = HUGE_VAL;
         Eigen::Index leaving = -1;
-        const double least = 1e-11 * direction.cwiseAbs().maxCoeff();
+        const double least = kSmallPivot * direction.cwiseAbs().maxCoeff();
         for (Eigen::Index i = 0; i < rows; ++i) {
             if (direction[i] <= least) continue;
             const double r = std::max(amount[i], 0.0) / direction[i];
-            if (r < ratio || (r == ratio && direction[i] > direction[leaving])) ratio = r, leaving = i;
+            const double tie = 1e-13 + 1e-12 * r;  // of equal ratios the largest pivot keeps the basis well apart
+            if (leaving < 0 || r < ratio - tie || (r < ratio + tie && direction[i] > direction[leaving]))
+                ratio = r, leaving = i;
         }
         if (leaving < 0) break;  // unbounded cannot happen: every column has positive atoms
         amount -= ratio * direction;
@@ -66,7 +71,10 @@ void Hull::solve(const Eigen::VectorXd& b, const Block& first, const Block& seco
                 if (i != leaving) inverse.row(i) -= direction[i] * inverse.row(leaving);
         }
     }
-    feasible = true;
+    inverse = matrix.partialPivLu().inverse();
+    amount.noalias() = inverse * b;
+    mu.noalias() = inverse.transpose() * cost;
+    feasible = amount.allFinite() && mu.allFinite();
     for (Eigen::Index i = 0; i < rows; ++i)
         if (basis[static_cast<size_t>(i)] < 0 && amount[i] > 1e-12) feasible = false;
 }
