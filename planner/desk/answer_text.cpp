@@ -14,18 +14,30 @@ QString row(const QString& name, const QString& value) {
     return QStringLiteral("<tr><td style='padding-right:12px'>%1</td><td align='right'>%2</td></tr>").arg(name, value);
 }
 
-/// Elements that reach 0.01 wt% in some phase, the most abundant first.
+/// Elements that reach 0.01 wt% in some phase, those that the metal holds most of first.
 QStringList elementsOf(const std::vector<Reading>& phases) {
-    std::map<QString, double> most;
+    std::map<QString, double> most, held;
     for (const Reading& phase : phases)
-        for (const auto& [element, wt] : phase.wt)
-            most[QString::fromStdString(element)] = std::max(most[QString::fromStdString(element)], wt);
+        for (const auto& [element, wt] : phase.wt) {
+            const QString symbol = QString::fromStdString(element);
+            most[symbol] = std::max(most[symbol], wt);
+            held[symbol] += phase.volume * wt;
+        }
     QStringList elements;
-    for (const auto& [element, wt] : most)
-        if (wt >= 0.01) elements << element;
+    for (const auto& [symbol, wt] : most)
+        if (wt >= 0.01) elements << symbol;
     std::stable_sort(elements.begin(), elements.end(),
-                     [&](const QString& a, const QString& b) { return most[a] > most[b]; });
+                     [&](const QString& a, const QString& b) { return held[a] > held[b]; });
     return elements;
+}
+
+QString cell(const QString& text) {
+    return QStringLiteral("<td align='right' style='white-space:nowrap'>%1</td>").arg(text);
+}
+
+QString content(double wt) {
+    if (wt < 0.001) return QStringLiteral("–");
+    return number(wt, wt >= 10 ? 1 : wt >= 0.1 ? 2 : 3);
 }
 
 }  // namespace
@@ -68,25 +80,22 @@ QString limitDetails(const Limit& limit, const Units& units) {
 QString phaseTable(const Ribbons& ribbons, double celsius) {
     const auto phases = ribbons.at(celsius);
     if (phases.empty()) return tr("No equilibrium was computed at this temperature.");
-    QStringList elements = elementsOf(phases);
-    if (elements.size() > 8) elements = elements.mid(0, 8);
-    QString text = QStringLiteral("<table cellspacing='0' cellpadding='3'><tr><td></td><td align='right'>") +
-                   tr("vol%") + QStringLiteral("</td>");
-    for (const QString& element : elements) text += QStringLiteral("<td align='right'>%1</td>").arg(element);
-    text += QStringLiteral("</tr>");
+    // One column a phase: there are few of them and many elements, and the panel is narrow.
+    QString names = QStringLiteral("<tr><td></td>"),
+            shares = QStringLiteral("<tr><td>") + tr("vol%") + QStringLiteral("</td>");
     for (const Reading& phase : phases) {
-        text += QStringLiteral("<tr><td>%1</td><td align='right'>%2</td>")
-                    .arg(phase.label.toHtmlEscaped(), percent(phase.volume).chopped(2));
-        for (const QString& element : elements) {
+        names += cell(phase.label.toHtmlEscaped());
+        shares += cell(percent(phase.volume).chopped(2));
+    }
+    const QString end = QStringLiteral("</tr>");
+    QString text = QStringLiteral("<table cellspacing='0' cellpadding='3'>") + names + end + shares + end;
+    for (const QString& element : elementsOf(phases)) {
+        text += QStringLiteral("<tr><td>%1</td>").arg(element);
+        for (const Reading& phase : phases) {
             const auto found = phase.wt.find(element.toStdString());
-            const double wt = found == phase.wt.end() ? 0 : found->second;
-            text += QStringLiteral("<td align='right'>%1</td>")
-                        .arg(wt < 0.001 ? QStringLiteral("–")
-                                        : number(wt, wt >= 10  ? 1
-                                                     : wt >= 1 ? 2
-                                                               : 3));
+            text += cell(content(found == phase.wt.end() ? 0 : found->second));
         }
-        text += QStringLiteral("</tr>");
+        text += end;
     }
     return text + QStringLiteral("</table>") + tr("Elements in wt% of each phase, at equilibrium.");
 }
@@ -106,22 +115,20 @@ QString bandDetails(const Band& band, const Units& units) {
 }
 
 QString gradeCheckText(const GradeCheck& check) {
-    QString text;
+    QStringList lines;
     for (const Finding& finding : check.findings) {
         QString line = finding.text.toHtmlEscaped();
         if (finding.fails) line = QStringLiteral("<b>%1</b>").arg(line);
         if (!finding.source.isEmpty()) line += QStringLiteral(" <i>(%1)</i>").arg(finding.source.toHtmlEscaped());
-        text += line + QStringLiteral("<br>");
+        lines << line;
     }
-    if (!check.grade_id.isEmpty())
-        text += tr("Row that decided: %1.").arg(check.grade_id.toHtmlEscaped()) + QStringLiteral("<br>");
-    if (!check.satisfied.isEmpty())
-        text += tr("Satisfied: %1.").arg(check.satisfied.join(QStringLiteral(", ")).toHtmlEscaped()) +
-                QStringLiteral("<br>");
-    if (!check.suggested.isEmpty())
-        text +=
-            tr("Nearest grades: %1. A person decides.").arg(check.suggested.join(QStringLiteral(", ")).toHtmlEscaped());
-    return text;
+    const auto add = [&lines](const QString& sentence, const QStringList& names) {
+        if (!names.isEmpty()) lines << sentence.arg(names.join(QStringLiteral(", ")).toHtmlEscaped());
+    };
+    add(tr("Row that decided: %1."), check.grade_id.isEmpty() ? QStringList() : QStringList{check.grade_id});
+    add(tr("Satisfied: %1."), check.satisfied);
+    add(tr("Nearest grades: %1. A person decides."), check.suggested);
+    return lines.join(QStringLiteral("<br>"));
 }
 
 QString linesOr(const QStringList& lines, const QString& otherwise) {

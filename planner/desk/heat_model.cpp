@@ -110,13 +110,19 @@ QString HeatModel::textAt(const Row& row, int column) const {
     }
 }
 
+QString HeatModel::whyText(const Row& row) const {
+    if (!row.judged) return tr("Not judged yet");
+    const TriageRow& judged = *row.judged;
+    return judged.furnace.isEmpty() ? judged.reason : tr("In %1. %2").arg(judged.furnace, judged.reason);
+}
+
 QVariant HeatModel::data(const QModelIndex& index, int role) const {
     const Row& row = rows_[size_t(index.row())];
     switch (role) {
         case Qt::DisplayRole:
             return textAt(row, index.column());
         case Qt::ToolTipRole:
-            return row.judged ? row.judged->reason : tr("Not judged yet");
+            return whyText(row);
         case Qt::TextAlignmentRole:
             return index.column() == marginColumn ? QVariant(Qt::AlignRight | Qt::AlignVCenter) : QVariant();
         case Qt::AccessibleTextRole:

@@ -58,6 +58,7 @@ private:
     void append(int begin, int end);
     void place(int item, const Rows& rows);
     QString textAt(const Row& row, int column) const;
+    QString whyText(const Row& row) const;
     double sortValue(const Row& row) const;
 
     std::shared_ptr<const DeskData> data_;

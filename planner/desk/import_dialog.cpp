@@ -10,6 +10,8 @@
 #include <QVBoxLayout>
 #include <algorithm>
 
+#include "db/heat_number.h"
+
 namespace soak::desk {
 namespace {
 
@@ -58,8 +60,8 @@ ImportDialog::ImportDialog(const Certificate& certificate, const QStringList& st
     auto* text = new QLabel(summary(certificate));
     text->setWordWrap(true);
     auto* buttons = new QDialogButtonBox(QDialogButtonBox::Cancel);
-    QPushButton* agree =
-        buttons->addButton(tr("&Store %n heat(s)", nullptr, int(heats_.size())), QDialogButtonBox::AcceptRole);
+    const QString offer = heats_.size() == 1 ? tr("&Store 1 heat") : tr("&Store %1 heats").arg(heats_.size());
+    QPushButton* agree = buttons->addButton(offer, QDialogButtonBox::AcceptRole);
     agree->setEnabled(!heats_.empty());
     agree->setDefault(true);
     for (QAbstractButton* button : buttons->buttons()) button->setMinimumHeight(32);
@@ -77,13 +79,19 @@ ImportDialog::ImportDialog(const Certificate& certificate, const QStringList& st
 QString ImportDialog::summary(const Certificate& certificate) const {
     const auto held = std::count_if(certificate.rows.begin(), certificate.rows.end(),
                                     [](const CertificateRow& row) { return !row.usable(); });
-    QStringList parts{tr("%n analysis row(s) found.", nullptr, int(certificate.rows.size()))};
-    if (held > 0) parts << tr("%n row(s) held back, with the reason; nothing is repaired.", nullptr, int(held));
-    if (stored_already_ > 0) parts << tr("%n heat(s) stored already stay as they are.", nullptr, stored_already_);
+    QStringList parts{tr("Analysis rows found: %1.").arg(certificate.rows.size())};
+    if (held > 0) parts << tr("Held back, each with its reason: %1; nothing is repaired.").arg(held);
+    if (stored_already_ > 0) parts << tr("Heats stored already, which stay as they are: %1.").arg(stored_already_);
     if (!certificate.others.empty())
-        parts << tr("%n other line(s) are no analysis: headings, limits, totals.", nullptr,
-                    int(certificate.others.size()));
+        parts << tr("Other lines (headings, limits, totals): %1.").arg(certificate.others.size());
     return parts.join(QLatin1Char(' '));
+}
+
+QString ImportDialog::stateOf(const CertificateRow& row, const QStringList& stored) const {
+    if (!row.usable()) return tr("held: %1").arg(row.held);
+    if (stored.contains(row.heat.number)) return tr("stored already");
+    const QStringList near = nearNumbers(row.heat.number, stored);
+    return near.isEmpty() ? tr("will be stored") : tr("will be stored; is it %1?").arg(near.join(tr(" or ")));
 }
 
 void ImportDialog::fillRows(const Certificate& certificate, const QStringList& stored) {
@@ -93,9 +101,7 @@ void ImportDialog::fillRows(const Certificate& certificate, const QStringList& s
     rows_->setRowCount(int(certificate.rows.size()));
     for (int i = 0; i < rows_->rowCount(); ++i) {
         const CertificateRow& row = certificate.rows[size_t(i)];
-        const QString state = !row.usable()                      ? tr("held: %1").arg(row.held)
-                              : stored.contains(row.heat.number) ? tr("stored already")
-                                                                 : tr("will be stored");
+        const QString state = stateOf(row, stored);
         put(rows_, i, 0, QString::number(row.line));
         put(rows_, i, 1, row.heat.number);
         put(rows_, i, 2, row.heat.grade);

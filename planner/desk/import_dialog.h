@@ -27,6 +27,7 @@ public:
 private:
     void fillRows(const Certificate& certificate, const QStringList& stored);
     void fillFindings(const Certificate& certificate);
+    QString stateOf(const CertificateRow& row, const QStringList& stored) const;
     QString summary(const Certificate& certificate) const;
 
     std::vector<Heat> heats_;

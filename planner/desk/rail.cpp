@@ -115,6 +115,7 @@ void Rail::clear(const QString& sentence) {
 
 void Rail::setUnits(Units units) {
     units_ = units;
+    writeLedges();
     forgetGround();
     describe();
 }
@@ -138,13 +139,20 @@ void Rail::collectLedges(const WindowAnswer& answer) {
             ledge.binding = first;
             ledge.at_C = *limit.temperature_C;
             ledge.uncertainty_K = limit.set ? 0 : limit.uncertainty_K;
-            ledge.cause = causeWithoutTemperature(limit);
-            ledge.temperature = limitTemperature(limit, units_);
+            ledge.limit = limit;
             ledges_.push_back(ledge);
             first = false;
         }
     }
     chooseLanes(ledges_);
+    writeLedges();
+}
+
+void Rail::writeLedges() {
+    for (Ledge& ledge : ledges_) {
+        ledge.temperature = limitTemperature(ledge.limit, units_);
+        ledge.cause = causeWithoutTemperature(ledge.limit);
+    }
 }
 
 void Rail::placeLedgeLabels() {

@@ -25,11 +25,12 @@ struct Ledge {
     Side side = Side::floor;
     int index = 0;         ///< into floors or ceilings of the answer
     bool binding = false;  ///< the first of its side that has a temperature
+    Limit limit;
     double at_C = 0, uncertainty_K = 0;
-    QString temperature, cause;
-    int lane = 0;         ///< brackets that would overlap stand side by side
-    QRectF label;         ///< where its label was placed; empty when there was no room
-    bool beyond = false;  ///< outside the view: its label points up or down
+    QString temperature, cause;  ///< as shown, in the units at hand
+    int lane = 0;                ///< brackets that would overlap stand side by side
+    QRectF label;                ///< where its label was placed; empty when there was no room
+    bool beyond = false;         ///< outside the view: its label points up or down
 };
 
 /// The temperature rail: temperature stands upright, the metal's phases as ribbons against it, floors and ceilings as
@@ -97,6 +98,7 @@ private:
     void moveBy(int steps);
     void forgetGround();
     void collectLedges(const WindowAnswer& answer);
+    void writeLedges();
     void placeLedgeLabels();
     void describe();
     bool isOnBand(const QPointF& at) const;

@@ -142,17 +142,19 @@ private slots:
             "heat,grade,C,Cr,N\n"
             "D1,1.4462,\"0,021\",22.4,1740 ppm\n"
             "D2,1.4462,0.020,252.0,0.17\n"
-            "D3,1.4462,0.019,22.1,0.165\n";
+            "D3,1.4462,0.019,22.1,0.165\n"
+            "D 4,1.4462,0.019,22.1,0.165\n";
         const Result<Certificate> certificate = readCertificateText(file, QStringLiteral("made.csv"));
         QVERIFY(certificate);
-        const ImportDialog dialog(certificate.value(), {QStringLiteral("D3")});
-        QCOMPARE(dialog.rows()->rowCount(), 3);
-        QCOMPARE(dialog.heats().size(), size_t(1));
+        const ImportDialog dialog(certificate.value(), {QStringLiteral("D3"), QStringLiteral("D4")});
+        QCOMPARE(dialog.rows()->rowCount(), 4);
+        QCOMPARE(dialog.heats().size(), size_t(2));
         QCOMPARE(dialog.heats().front().number, QStringLiteral("D1"));
         QCOMPARE(dialog.rows()->item(0, 5)->text(), QStringLiteral("0,021"));
         QVERIFY(dialog.rows()->item(0, 5)->toolTip().contains("0.021 wt%"));
         QVERIFY(dialog.rows()->item(1, 4)->text().startsWith("held:"));
         QCOMPARE(dialog.rows()->item(2, 4)->text(), QStringLiteral("stored already"));
+        QVERIFY(dialog.rows()->item(3, 4)->text().contains("is it D4?"));  // an offer, never a repair
     }
 };
 

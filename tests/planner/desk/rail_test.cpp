@@ -140,6 +140,14 @@ private slots:
         QVERIFY(each_ms < 1000.0 / 60);
     }
 
+    void limits_change_their_unit_with_the_setting() {
+        const auto rail = openRail();
+        rail->setUnits({true});
+        for (const Ledge& ledge : rail->ledges()) QVERIFY(ledge.temperature.endsWith("°F"));
+        rail->setUnits({false});
+        for (const Ledge& ledge : rail->ledges()) QVERIFY(ledge.temperature.endsWith("°C"));
+    }
+
     void without_an_answer_it_says_what_to_do() {
         const auto rail = openRail();
         rail->clear(QStringLiteral("Choose a heat on the left."));
