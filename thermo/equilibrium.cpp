@@ -681,37 +681,44 @@ Point Solver::coldStart(double T) {
     return p;
 }
 
-/// Refines the hull with minima of every phase until its plane lies within a hundredth of RT of them all.
+/// Refines the hull with minima of every phase until its energy and the best lower bound meet. The plane of a hull that
+/// is still coarse swings wildly, so the minima are sought at a plane between it and the best one known (smoothing
+/// after P. Wentges, Int. Trans. Oper. Res. 4 (1997) 151-162); mu b - (largest driving force) bounds the energy from
+/// below.
 bool Solver::columnStart(Point& p) {
+    constexpr double kTrust = 0.75;  // weight of the best plane
+    constexpr int kRounds = 200;
     ++counters.fallbacks;
-    const double RT = kGas * p.T;
     setTemperature(p.T);
     samplesAt(p.T);
     std::vector<PhaseSet> extra;
     addOverall(extra, p.T);
     Hull hull;
-    for (int round = 0; round < 80; ++round) {
-        if (!solveHull(hull, extra, true) && round > 5) return false;
-        p.mu = hull.mu;
-        p.sets = setsOf(hull, extra, system_->samples().count());
-        std::vector<PhaseSet> none;
-        std::swap(none, p.sets);  // every phase is searched, those of the basis too
-        p.minima.clear();
-        for (PhaseSet& set : none) {
-            Minimum m;
-            m.set = set;
-            p.minima.push_back(m);
+    if (!solveHull(hull, extra, true)) return false;
+    Eigen::VectorXd best = hull.mu;
+    double bound = -std::numeric_limits<double>::infinity();
+    Point probe;
+    probe.T = p.T;
+    for (int round = 0; round < kRounds; ++round) {
+        if (hull.feasible) p.sets = setsOf(hull, extra, system_->samples().count());
+        probe.minima.clear();  // every phase is searched, from the columns of the basis too
+        for (const PhaseSet& set : p.sets) probe.minima.push_back({set, 0});
+        probe.mu = round == 0 ? hull.mu : Eigen::VectorXd(kTrust * best + (1 - kTrust) * hull.mu);
+        const double lower = probe.mu.dot(b_) - prove(probe, true);
+        if (lower > bound) {
+            bound = lower;
+            best = probe.mu;
         }
-        const double lack = prove(p, true);
-        std::swap(none, p.sets);
-        if (lack < (round < 40 ? 1e-3 : 1e-2) * RT) break;
-        for (const Minimum& m : p.minima)
-            if (m.height < 0) {
-                PhaseSet set = m.set;
-                complete(set, p.T);
-                extra.push_back(set);
-            }
+        if (hull.mu.dot(b_) - bound < 1e-5 * kGas * p.T) break;
+        for (const Minimum& m : probe.minima) {
+            PhaseSet set = m.set;
+            complete(set, p.T);
+            extra.push_back(set);
+        }
+        if (!solveHull(hull, extra, true) && round > 10) break;
     }
+    if (p.sets.empty()) return false;
+    p.mu = best;
     mergeSets(p.sets, p.T);
     p.minima.clear();
     return true;
@@ -752,28 +759,43 @@ bool Solver::converge(Point& p, bool thorough) {
     for (int round = 0; round < 60; ++round) {
         const bool refined = refine(p, nullptr, nullptr) && stands(p);
         if (round == 0 && !refined) return false;
-        if (refined && (best.sets.empty() || p.gibbs < best.gibbs - 1e-9)) {
+        // On a boundary the energy does not change; there the plane must have come nearer to the minima.
+        bool better = refined && (best.sets.empty() || p.gibbs < best.gibbs - 1e-9);
+        if (better || (refined && p.gibbs < best.gibbs + 1e-6)) {
             // Until the answer stands, a light search is enough to see what enters; then the thorough one confirms.
             prove(p, thorough && assured);
-            entering = violators(p);
-            if (entering.empty() && !assured) {
+            std::vector<Minimum> now = violators(p);
+            if (now.empty() && !assured) {
                 prove(p, true);
-                entering = violators(p);
+                now = violators(p);
             }
-            if (entering.empty()) return true;
+            if (now.empty()) return true;
+            better = better || p.proof < best.proof;
+            if (better) entering = std::move(now);
+        }
+        if (better) {
             best = p;
             tried = 0;
         } else {
+            // It led upward. The hull over what stood before, where it led and what wants to enter lies lower than
+            // both.
+            std::vector<Minimum> bundle = entering;
+            for (const PhaseSet& set : p.sets)
+                if (refined) bundle.push_back({set, 0});
             p = best;
-            ++tried;
+            if (++tried % 2 == 1 && exchange(p, bundle)) {
+                mergeSets(p.sets, p.T);
+                continue;
+            }
         }
-        if (tried >= std::min<size_t>(entering.size(), 8)) return false;
+        const size_t next = tried / 2;
+        if (next >= std::min<size_t>(entering.size(), 8)) return false;
         if (static_cast<int>(p.sets.size()) >= system_->elementCount()) {
             // No room: the new set can only take another's place.
-            if (!exchange(p, {entering.begin() + static_cast<long>(tried), entering.end()})) return false;
+            if (!exchange(p, {entering.begin() + static_cast<long>(next), entering.end()})) return false;
             continue;
         }
-        PhaseSet set = entering[tried].set;
+        PhaseSet set = entering[next].set;
         set.n = 0;
         p.sets.push_back(set);
     }
