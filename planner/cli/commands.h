@@ -16,6 +16,7 @@ Result<int> sweepCommand(const QStringList& given);
 Result<int> windowCommand(const QStringList& given);
 Result<int> triageCommand(const QStringList& given);
 Result<int> sheetCommand(const QStringList& given);
+Result<int> evidenceCommand(const QStringList& given);
 Result<int> storeCommand(const QStringList& given);
 Result<int> helpCommand(const QStringList& given);
 

@@ -18,6 +18,10 @@ Result<int> helpCommand(const QStringList&) {
       --furnace NAME, --threads N
   soakwright sheet  --store FILE --heat ID --cycle NAME --furnace NAME --pdf FILE
       --setpoint C, --paper a4|letter, --issue NAME   without --issue a draft is written
+  soakwright evidence                           published values beside the computed ones, bias and scatter
+      --family NAME, --kind NAME                only these rows
+      --write FILE                              bias and scatter of the limits, for the planner
+      --baseline FILE                           the computed values, for the tests
   soakwright store new FILE [--demo]            a new store, empty or with the demonstration shop
   soakwright help | --version
 
