@@ -14,8 +14,10 @@ constexpr int kMost = PhaseModel::kMost;
 constexpr int kMostElements = 24;
 constexpr double kFloor = 1e-20;     // smallest site fraction: below it a constituent weighs nothing in G
 constexpr double kViolation = 2e-7;  // driving force, in RT per mole of atoms, above which a phase enters
+constexpr double kArrived = 2e-4;    // distance2 at which a search is on its way to a known place
+constexpr double kSame = 1e-5;       // distance2 below which two places are one
 constexpr double kWarmRange = 60;    // K between neighbours that may start from each other
-constexpr double kResettle = 0.05;  // fall of a sample, in RT per formula unit, after which its class is searched again
+constexpr double kResettle = 0.02;  // fall of a sample, in RT per formula unit, after which its class is searched again
 
 /// Euclidean distance of the square roots of site fractions: the natural metric of mixing entropy.
 double distance2(const double* y, const double* z, int n) {
@@ -401,15 +403,16 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
         ++counters.descentSteps;
         localize(model, y, T, local, false);
         m.height = local.G - a.dot(mu);
+        m.set.atoms = local.atoms;
         const double decrement = local.residual(model, mu.data());
         double dz[kMost], change = 0;
         for (int c = 0; c < n; ++c) dz[c] = -local.w0[c];
         local.backward(dz, n);
         if (!local.shifted && turn > 0) {  // heading for a place that is known already?
             for (const PhaseSet& set : sets)
-                if (set.phase == m.set.phase && !set.unstable && distance2(set.y.data(), y, n) < 2e-3) return;
+                if (set.phase == m.set.phase && !set.unstable && distance2(set.y.data(), y, n) < kArrived) return;
             for (const Minimum& other : known)
-                if (other.set.phase == m.set.phase && distance2(other.set.y.data(), y, n) < 1e-4 &&
+                if (other.set.phase == m.set.phase && distance2(other.set.y.data(), y, n) < kArrived / 2 &&
                     other.height < m.height + 1e-6)
                     return;
         }
@@ -439,7 +442,7 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
 /// True when a known place of the phase no longer lies where it lay when every class of the phase was last open: what
 /// led to it then may lead elsewhere now, as when a miscibility gap opens.
 bool Solver::hasMoved(const Point& p, int phase, const std::vector<Minimum>& found) const {
-    constexpr double kMoved = 3e-3;
+    constexpr double kMoved = 1e-3;
     const int n = system_->phases()[static_cast<size_t>(phase)].size;
     const auto away = [&](const PhaseSet& set) {
         if (set.phase != phase) return false;
@@ -491,10 +494,10 @@ double Solver::prove(Point& p, bool thorough) {
         const auto consider = [&](Minimum m) {
             descend(m, p.T, p.mu, found, p.sets);
             for (const PhaseSet& set : p.sets)
-                if (set.phase == m.set.phase && distance2(set.y.data(), m.set.y.data(), models[f].size) < 2e-3)
+                if (set.phase == m.set.phase && distance2(set.y.data(), m.set.y.data(), models[f].size) < kSame)
                     return false;
             for (size_t k = firstFound; k < found.size(); ++k)
-                if (distance2(found[k].set.y.data(), m.set.y.data(), models[f].size) < 1e-3) {
+                if (distance2(found[k].set.y.data(), m.set.y.data(), models[f].size) < kSame) {
                     if (m.height < found[k].height) found[k] = m;
                     return false;
                 }
@@ -521,14 +524,14 @@ double Solver::prove(Point& p, bool thorough) {
         }
         order.clear();
         double* settled = p.settled.data() + samples.firstKind[f];
-        const double reach = (thorough ? 3.0 : 1.0) * RT * most;
+        const double reach = (thorough ? 4.0 : 2.0) * RT * most;
         for (size_t kind = 0; kind < best.size(); ++kind)
             if (bestAt[kind] >= 0 && best[kind] < reach && (thorough || best[kind] < settled[kind] - kResettle * RT))
                 order.push_back({best[kind], bestAt[kind]});
         std::sort(order.begin(), order.end());
         size_t starts = 0;
         for (const auto& [height, at] : order) {
-            if (starts++ >= (thorough || opened ? 16u : 4u)) break;
+            if (starts++ >= (thorough || opened ? 24u : 8u)) break;
             Minimum m;
             m.set.phase = static_cast<int>(f);
             std::copy(samples.site(at), samples.site(at) + models[f].size, m.set.y.begin());
@@ -538,8 +541,7 @@ double Solver::prove(Point& p, bool thorough) {
         for (size_t k = firstFound; k < found.size(); ++k) low = std::min(low, found[k].height);
         for (const PhaseSet& set : p.sets)
             if (set.phase == static_cast<int>(f)) low = std::min(low, 0.0);
-        if (low == std::numeric_limits<double>::infinity())
-            low = reach - 3 * RT * most;  // nothing near: searched again soon
+        if (low == std::numeric_limits<double>::infinity()) low = 0;  // nothing near: searched again soon
         lowest[f] = low;
     }
     for (const Minimum& m : found) proof = std::max(proof, -m.height / m.set.atoms);
