@@ -497,7 +497,7 @@ double Solver::prove(Point& p, bool thorough) {
                 if (set.phase == m.set.phase && distance2(set.y.data(), m.set.y.data(), models[f].size) < kSame)
                     return false;
             for (size_t k = firstFound; k < found.size(); ++k)
-                if (distance2(found[k].set.y.data(), m.set.y.data(), models[f].size) < kSame) {
+                if (distance2(found[k].set.y.data(), m.set.y.data(), models[f].size) < 10 * kSame) {
                     if (m.height < found[k].height) found[k] = m;
                     return false;
                 }
@@ -779,18 +779,29 @@ bool Solver::converge(Point& p, bool thorough) {
             best = p;
             tried = 0;
         } else {
-            // It led upward. The hull over what stood before, where it led and what wants to enter lies lower than
-            // both.
-            std::vector<Minimum> bundle = entering;
-            for (const PhaseSet& set : p.sets)
-                if (refined) bundle.push_back({set, 0});
+            // It led upward. First the hull over what stood before, where it led and what wants to enter; then the mean
+            // of what stood and where it led; then the next that wants to enter.
+            const Point reached = std::move(p);
             p = best;
-            if (++tried % 2 == 1 && exchange(p, bundle)) {
+            ++tried;
+            if (tried % 3 == 1) {
+                std::vector<Minimum> bundle = entering;
+                for (const PhaseSet& set : reached.sets)
+                    if (refined) bundle.push_back({set, 0});
+                if (exchange(p, bundle)) {
+                    mergeSets(p.sets, p.T);
+                    continue;
+                }
+            }
+            if (tried % 3 == 2 && refined) {
+                p.sets.insert(p.sets.end(), reached.sets.begin(), reached.sets.end());
+                for (PhaseSet& set : p.sets) set.n /= 2;
                 mergeSets(p.sets, p.T);
-                continue;
+                if (static_cast<int>(p.sets.size()) <= system_->elementCount()) continue;
+                p = best;
             }
         }
-        const size_t next = tried / 2;
+        const size_t next = tried / 3;
         if (next >= std::min<size_t>(entering.size(), 8)) return false;
         if (static_cast<int>(p.sets.size()) >= system_->elementCount()) {
             // No room: the new set can only take another's place.
