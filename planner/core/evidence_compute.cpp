@@ -63,7 +63,7 @@ struct Case {
 
 const PhaseAmount* find(const State& state, const PhaseWord& phase) {
     for (const PhaseAmount& one : state.phases)
-        if (phase.matches(one.name, one.label)) return &one;
+        if (phase.matches(one)) return &one;
     return nullptr;
 }
 
@@ -76,7 +76,7 @@ const PhaseAmount* findOrNearest(const State& state, const PhaseWord& phase) {
 double volumePercent(const State& state, const PhaseWord& phase) {
     double sum = 0;
     for (const PhaseAmount& one : state.phases)
-        if (phase.matches(one.name, one.label)) sum += one.volume_fraction;
+        if (phase.matches(one)) sum += one.volume_fraction;
     return 100 * sum;
 }
 
@@ -197,32 +197,29 @@ Result<double> curie(const Case& one) {
 
 // -------------------------------------------------------------------------------------------------- invariants
 
-/// Whether every phase of the row is found among `there`, each in a set of its own.
-bool holdsAll(const std::vector<PhaseWord>& wanted, std::set<std::pair<std::string, std::string>> there,
-              bool any_label) {
-    std::vector<PhaseWord> order = wanted;
-    std::stable_sort(order.begin(), order.end(), [](const auto& a, const auto& b) {
-        return a.label.size() > b.label.size() && a.label != "*";  // the choosy ones first
-    });
-    for (const PhaseWord& phase : order) {
-        auto at = std::find_if(there.begin(), there.end(),
-                               [&](const auto& set) { return phase.matches(set.first, set.second); });
-        if (at == there.end() && any_label)  // the second of two aluminium solutions
-            at = std::find_if(there.begin(), there.end(), [&](const auto& set) { return set.first == phase.key; });
+/// Words that fit one label only choose first, those that name the main element next.
+int choosiness(const PhaseWord& phase) {
+    if (!phase.label.empty() && phase.label != "*") return 0;
+    return phase.main.empty() ? 2 : 1;
+}
+
+/// Whether every phase of the row is found in these states together, each in a set of its own.
+bool holdsAll(std::vector<PhaseWord> wanted, const std::vector<const State*>& states) {
+    std::map<std::string, const PhaseAmount*> there;  // one of each label
+    for (const State* state : states)
+        for (const PhaseAmount& phase : state->phases)
+            there[phase.label == "delta ferrite" ? "ferrite" : phase.label] = &phase;  // a label that changes at events
+    std::stable_sort(wanted.begin(), wanted.end(),
+                     [](const auto& a, const auto& b) { return choosiness(a) < choosiness(b); });
+    for (const PhaseWord& phase : wanted) {
+        auto at = std::find_if(there.begin(), there.end(), [&](const auto& set) { return phase.matches(*set.second); });
+        if (at == there.end() && phase.label.empty())  // the second of two aluminium solutions
+            at = std::find_if(there.begin(), there.end(),
+                              [&](const auto& set) { return set.second->name == phase.key; });
         if (at == there.end()) return false;
         there.erase(at);
     }
     return true;
-}
-
-bool holdsAll(const std::vector<PhaseWord>& wanted, const std::vector<const State*>& states) {
-    std::set<std::pair<std::string, std::string>> there;
-    for (const State* state : states)
-        for (const PhaseAmount& phase : state->phases) {
-            const bool delta = phase.label == "delta ferrite";  // one word for both sides of an event
-            there.insert({phase.name, delta ? "ferrite" : phase.label});
-        }
-    return holdsAll(wanted, there, true);
 }
 
 /// Ranges of temperature in which all phases of the row are there, lowest first: points where a line meets the sample,

@@ -10,9 +10,11 @@ namespace soak {
 /// A word for a phase in a published row, as data key and label: "(W)" is the key ferrite, "copper" a label of
 /// austenite.
 struct PhaseWord {
-    std::string key, label;  ///< an empty label: any label of the key but those that have a word of their own
+    std::string key, label = {},
+                     main = {};  ///< an empty label: any label of the key but those that have a word of their own
 
     bool matches(const std::string& name, const std::string& its_label) const;
+    bool matches(const PhaseAmount& phase) const;  ///< and `main`, when given, is the largest content
 };
 /// Nothing when the data set has no such phase.
 std::optional<PhaseWord> phaseWord(const QString& text, const DataSetFacts& facts);

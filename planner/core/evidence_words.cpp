@@ -15,15 +15,15 @@ constexpr std::array<const char*, 4> kOwnWord{"MX", "copper", "zinc-rich alumini
 
 // Published word -> data key and label; every other word must be a data key itself.
 const std::map<QString, PhaseWord> kWords{{"delta ferrite", {"ferrite", ""}},
-                                          {"ferrite (Mo)", {"ferrite", "*"}},
+                                          {"ferrite (Mo)", {"ferrite", "*", "Mo"}},
                                           {"bcc", {"ferrite", "*"}},
-                                          {"(W)", {"ferrite", "*"}},
-                                          {"W", {"ferrite", "*"}},
-                                          {"Mo", {"ferrite", "*"}},
-                                          {"Nb", {"ferrite", "*"}},
-                                          {"V", {"ferrite", "*"}},
-                                          {"Cr", {"ferrite", "*"}},
-                                          {"(Ti) bcc", {"ferrite", "*"}},
+                                          {"(W)", {"ferrite", "*", "W"}},
+                                          {"W", {"ferrite", "*", "W"}},
+                                          {"Mo", {"ferrite", "*", "Mo"}},
+                                          {"Nb", {"ferrite", "*", "Nb"}},
+                                          {"V", {"ferrite", "*", "V"}},
+                                          {"Cr", {"ferrite", "*", "Cr"}},
+                                          {"(Ti) bcc", {"ferrite", "*", "Ti"}},
                                           {"fcc", {"austenite", ""}},
                                           {"gamma-Mn (fcc)", {"austenite", ""}},
                                           {"hcp", {"hexagonal", "*"}},
@@ -57,6 +57,13 @@ bool PhaseWord::matches(const std::string& name, const std::string& its_label) c
     if (label == "*") return true;
     if (!label.empty()) return its_label == label;
     return std::find(kOwnWord.begin(), kOwnWord.end(), its_label) == kOwnWord.end();
+}
+
+bool PhaseWord::matches(const PhaseAmount& phase) const {
+    if (!matches(phase.name, phase.label)) return false;
+    return main.empty() || main == std::max_element(phase.wt.begin(), phase.wt.end(), [](const auto& a, const auto& b) {
+                                       return a.second < b.second;
+                                   })->first;
 }
 
 std::optional<PhaseWord> phaseWord(const QString& text, const DataSetFacts& facts) {
