@@ -1,5 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include <QSaveFile>
+#include <algorithm>
 
 #include "arguments.h"
 #include "commands.h"
@@ -68,6 +69,8 @@ QString summaryText(const std::vector<EvidenceGroup>& groups) {
          {std::pair{EvidenceClass::firm, "Firm rows"},
           {EvidenceClass::unsure, "Unsure or calculated rows: for the trend only"},
           {EvidenceClass::calibration, "Calibration rows: data were fitted to them, no evidence"}}) {
+        if (std::none_of(groups.begin(), groups.end(), [&](const auto& group) { return group.weight == weight; }))
+            continue;
         text += QString("\n%1\n  ").arg(title) + QString("family").leftJustified(26) +
                 QString("kind").leftJustified(20) +
                 " rows  left      mean  st. dev.     worst  unit          worst row\n";

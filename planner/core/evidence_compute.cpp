@@ -38,6 +38,7 @@ struct Case {
     Chemistry sample;
     PhaseChoice choice;
     std::vector<PhaseWord> phases;  ///< the row's phases, in its order
+    QString& remark;                ///< what was done on the way
 
     double from_K() const { return std::max(kLowest_K, kelvin(*row.value) - kReach_K); }
     double to_K() const { return std::min(kHighest_K, kelvin(*row.value) + kReach_K); }
@@ -113,7 +114,11 @@ Result<double> liquidus(const Case& one) {
     if (!isMolten(sweep.value().states.back())) return noEvent("not wholly molten");
     const auto& events = sweep.value().events;
     for (auto event = events.rbegin(); event != events.rend(); ++event)
-        if (event->kind == EventKind::vanishes && event->phase != "liquid") return celsius(event->temperature_K);
+        if (event->kind == EventKind::vanishes && event->phase != "liquid") {
+            if (one.phases[0].key != "liquid" && !one.phases[0].matches(event->phase, event->label))
+                one.remark = "first solid computed: " + QString::fromStdString(event->label);
+            return celsius(event->temperature_K);
+        }
     return noEvent("no solid");
 }
 
@@ -176,23 +181,33 @@ Result<double> transformation(const Case& one) {
     return one.row.phase == "austenite" ? appearance(one) : solvus(one);
 }
 
-/// The peak of the heat capacity, from second differences of G.
-Result<double> curie(const Case& one) {
-    auto alloy = one.alloy(one.sample);
-    if (!alloy) return std::move(alloy).error();
-    constexpr double kStep = 1;
-    double best = 0, at = 0;
-    for (double T = kelvin(*one.row.value) - 100; T <= kelvin(*one.row.value) + 100; T += kStep) {
+/// The temperature of the largest heat capacity, from second differences of G.
+Result<double> heatCapacityPeak(Alloy& alloy, double from, double to, double step) {
+    double best = 0, at = from;
+    for (double T = from; T <= to; T += step) {
         double gibbs[3];
         for (int side = 0; side < 3; ++side) {
-            const auto state = alloy.value().stateAt(T + (side - 1) * kStep);
+            const auto state = alloy.stateAt(T + (side - 1) * step);
             if (!state) return state.error();
             gibbs[side] = state.value().gibbs_J_per_mol;
         }
-        const double capacity = T * (2 * gibbs[1] - gibbs[0] - gibbs[2]) / (kStep * kStep);
-        if (capacity > best) best = capacity, at = T;
+        const double capacity = T * (2 * gibbs[1] - gibbs[0] - gibbs[2]) / (step * step);
+        if (capacity > best) {
+            best = capacity;
+            at = T;
+        }
     }
-    return celsius(at);
+    return at;
+}
+
+Result<double> curie(const Case& one) {
+    auto alloy = one.alloy(one.sample);
+    if (!alloy) return std::move(alloy).error();
+    const double middle = kelvin(*one.row.value);
+    const auto near = heatCapacityPeak(alloy.value(), middle - 100, middle + 100, 2);
+    if (!near) return near;
+    const auto exact = heatCapacityPeak(alloy.value(), near.value() - 4, near.value() + 4, 0.1);
+    return exact ? Result<double>(celsius(exact.value())) : exact;
 }
 
 // -------------------------------------------------------------------------------------------------- invariants
@@ -498,7 +513,7 @@ Result<double> computeRow(const EvidenceRow& row, const std::shared_ptr<const Da
         return because(row.quantity.startsWith("phase_") ? "a constraint on what may form, not a number"
                                                          : row.quantity + " is not a matter of equilibrium");
     if (!row.value) return because("the published entry is a list or a range: " + row.value_text);
-    Case one{row, data, known, {}, choiceOf(row, known), {}};
+    Case one{row, data, known, {}, choiceOf(row, known), {}, remark};
     for (const QString& text : phasesOf(row).split('/')) {
         const auto phase = phaseWord(text, known);
         if (!phase) return because(text + " is not modelled");

@@ -1,11 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 // Published rows against computed ones. A miss is printed with its difference and fails nothing: it is a statement
 // about the data. What fails is a row that can no longer be computed, or one that moved from the recorded baseline.
+#include <QProcess>
 #include <algorithm>
 #include <catch2/catch.hpp>
 #include <cmath>
 #include <cstdio>
-#include <map>
+#include <nlohmann/json.hpp>
 #include <set>
 
 #include "base/folders.h"
@@ -175,4 +176,34 @@ TEST_CASE("the planner's table of bias and scatter is the one that these rows ma
     for (const char* id : {"eq211", "eq212", "eq213", "eq214"}) mean += *row(id).difference() / 4;
     CHECK(used.mean == Approx(mean).margin(0.3));  // 0.2 K of the baseline and the rounding to 0.1 K
     CHECK(used.rows == 0);                         // all four are marked unsure: little evidence
+}
+
+TEST_CASE("soakwright evidence answers for one family and kind, as text and for programs") {
+    const auto run = [](const QStringList& arguments) {
+        QProcess process;
+        process.start(SOAKWRIGHT_COMMAND, QStringList{"evidence"} + arguments);
+        REQUIRE(process.waitForFinished(120000));
+        return std::pair{process.exitCode(), QString::fromUtf8(process.readAllStandardOutput())};
+    };
+    const auto [status, out] = run({"--family", "austenitic stainless", "--kind", "solvus", "--json"});
+    REQUIRE(status == 0);
+    const auto json = nlohmann::json::parse(out.toStdString());
+    REQUIRE(json["rows"].size() == 5);
+    for (const auto& one : json["rows"]) {
+        CHECK(one["difference"].get<double>() ==
+              Approx(one["computed"].get<double>() - one["value"].get<double>()).margin(1e-9));
+        CHECK_FALSE(one["source"].get<std::string>().empty());
+    }
+    REQUIRE(json["groups"].size() == 2);
+    CHECK(json["groups"][0]["weight"] == "unsure");
+    CHECK(json["groups"][0]["count"] == 4);
+    CHECK(json["groups"][1]["weight"] == "calibration");
+
+    const auto [text_status, text] = run({"--family", "Fe-Cr", "--kind", "gamma_loop"});
+    CHECK(text_status == 0);
+    CHECK(text.contains("Firm rows"));
+    CHECK(text.contains("little evidence"));
+    CHECK_FALSE(text.contains("Calibration rows"));
+    CHECK(run({"--kind", "solubility of cheese"}).first == 2);
+    CHECK(run({"--kind", "solvus", "--baseline", "x.csv"}).first == 2);
 }
