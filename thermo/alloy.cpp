@@ -243,7 +243,9 @@ bool Alloy::Inside::formsOnHeating(const Point& point) {
 
 std::map<std::string, double> Alloy::Inside::perWt(const Eigen::VectorXd& dT_db) const {
     std::map<std::string, double> slopes;
-    if (dT_db.size() == 0 || !dT_db.allFinite()) return slopes;
+    // Where a label changes with no phase boundary, or at a congruent point, there is no finite slope.
+    constexpr double kSteepest = 1e9;  // K per mole fraction: steeper than any trace element's
+    if (dT_db.size() == 0 || !dT_db.allFinite() || dT_db.cwiseAbs().maxCoeff() > kSteepest) return slopes;
     const int balance = data->elementIndex(chemistry.balance);
     int local = -1;
     for (int e = 0; e < system->elementCount(); ++e)

@@ -248,11 +248,8 @@ Result<Event> Alloy::Inside::solveBetween(double from_K, double to_K,
     double atHigh = measure(solver->point());
     const double first = low, last = high;
     if (atLow * atHigh > 0)
-        return Error{Fault::range,
-                     "the value is not reached between " + std::to_string(celsius(low)) + " and " +
-                         std::to_string(celsius(high)) + " °C",
-                     "",
-                     {}};
+        return Error{
+            Fault::range, "the value is not reached between " + celsiusText(low) + " and " + celsiusText(high), "", {}};
     Event event;
     for (int turn = 0; turn < 80; ++turn) {
         const double share = turn % 3 == 2 || atLow == atHigh ? 0.5 : std::clamp(atLow / (atLow - atHigh), 0.1, 0.9);

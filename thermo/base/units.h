@@ -1,5 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
+#include <cstdio>
+#include <string>
 
 namespace soak {
 
@@ -10,6 +12,12 @@ inline constexpr double kelvin(double celsius) { return celsius + 273.15; }
 inline constexpr double celsius(double kelvin) { return kelvin - 273.15; }
 inline constexpr double fahrenheit(double celsius) { return celsius * 1.8 + 32.0; }
 inline constexpr double celsiusFromFahrenheit(double fahrenheit) { return (fahrenheit - 32.0) / 1.8; }
+/// "1050.0 °C" for a message, from kelvin.
+inline std::string celsiusText(double kelvin) {
+    char text[32];
+    std::snprintf(text, sizeof text, "%.1f °C", celsius(kelvin));
+    return text;
+}
 /// A temperature difference: multiplied by 1.8 only, never offset by 32.
 inline constexpr double fahrenheitDifference(double kelvins) { return kelvins * 1.8; }
 

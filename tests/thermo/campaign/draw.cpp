@@ -96,7 +96,8 @@ Case draw(const Source& source, Random& random) {
     // Grades weigh most; the rest in equal parts.
     constexpr Kind kinds[] = {Kind::grade,   Kind::grade, Kind::grade,  Kind::corner, Kind::corner, Kind::outside,
                               Kind::outside, Kind::trace, Kind::absent, Kind::pair,   Kind::single};
-    c.kind = kinds[random() % std::size(kinds)];
+    constexpr size_t kLibrary = 5;  // the first of them
+    c.kind = kinds[random() % (source.libraryOnly ? kLibrary : std::size(kinds))];
     const auto& elements = source.data->elements;
     switch (c.kind) {
         case Kind::grade:

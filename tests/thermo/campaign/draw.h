@@ -40,6 +40,7 @@ struct Source {
     std::shared_ptr<const DataSet> data;
     std::vector<Grade> grades;
     std::map<std::string, double> outside;
+    bool libraryOnly = false;  ///< only chemistries inside the library's grades and at their corners
 };
 Source makeSource(std::shared_ptr<const DataSet> data, std::vector<Grade> grades);
 

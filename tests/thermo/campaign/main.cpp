@@ -2,7 +2,7 @@
 // campaign: is the equilibrium ever wrong? Draws chemistries and temperatures and checks every answer by independent
 // means: mass balance, phase rule, a search of every phase from random starts, and other starts of the solver itself.
 //
-//   campaign --count 2000 --seconds 60                       the short form, part of the test run
+//   campaign --library --count 2000 --threads 2              the grade library alone: part of the test run
 //   campaign --count 100000 --threads 2 --seed 1             the long form, gas left out
 //   campaign --count 100000 --threads 2 --seed 1 --gas       the long form, gas let in
 //   campaign --seed 1 --case 4711                            repeats one case
@@ -28,7 +28,7 @@ struct Request {
     double seconds = 1e9;
     unsigned long seed = 1;
     int threads = 1;
-    bool gas = false;
+    bool gas = false, library = false;
     std::string set = "ferrous";
 };
 
@@ -57,10 +57,10 @@ void print(const Request& request, long number, const Outcome& o) {
     std::string with = o.drawn.graphite ? "graphite" : "";
     if (request.gas) with += with.empty() ? "nitrogen_gas" : ",nitrogen_gas";
     std::printf(
-        "  %s, %s %s\n  campaign --set %s --seed %lu%s --case %ld\n  soakwright state --wt \"%s\"%s%s --at %.12g\n",
+        "  %s, %s %s\n  campaign --set %s --seed %lu%s%s --case %ld\n  soakwright state --wt \"%s\"%s%s --at %.12g\n",
         nameOf(o.drawn.kind), nameOf(o.drawn.place), o.drawn.grade.c_str(), request.set.c_str(), request.seed,
-        request.gas ? " --gas" : "", number, wtText(o.drawn).c_str(), with.empty() ? "" : " --with ", with.c_str(),
-        celsius(o.T));
+        request.gas ? " --gas" : "", request.library ? " --library" : "", number, wtText(o.drawn).c_str(),
+        with.empty() ? "" : " --with ", with.c_str(), celsius(o.T));
     std::fflush(stdout);
 }
 
@@ -80,6 +80,10 @@ bool read(int argc, char** argv, Request& request) {
         const std::string option = argv[i];
         if (option == "--gas") {
             request.gas = true;
+            continue;
+        }
+        if (option == "--library") {
+            request.library = true;
             continue;
         }
         if (i + 1 == argc) return false;
@@ -118,7 +122,8 @@ int work(const Request& request) {
         std::fprintf(stderr, "the grade library cannot be read\n");
         return 2;
     }
-    const Source source = makeSource(data.value(), std::move(grades));
+    Source source = makeSource(data.value(), std::move(grades));
+    source.libraryOnly = request.library;
     using Clock = std::chrono::steady_clock;
     const auto start = Clock::now();
     const auto elapsed = [&] { return std::chrono::duration<double>(Clock::now() - start).count(); };
@@ -149,7 +154,8 @@ int main(int argc, char** argv) {
     soak::campaign::Request request;
     if (!read(argc, argv, request)) {
         std::fprintf(stderr,
-                     "campaign [--count N] [--seconds S] [--seed N] [--threads N] [--gas] [--set NAME] [--case N]\n");
+                     "campaign [--count N] [--seconds S] [--seed N] [--threads N] [--gas] [--library] [--set NAME] "
+                     "[--case N]\n");
         return 2;
     }
     return soak::campaign::work(request);
