@@ -14,6 +14,7 @@ constexpr int kMost = PhaseModel::kMost;
 constexpr int kMostElements = 24;
 constexpr double kFloor = 1e-20;     // smallest site fraction: below it a constituent weighs nothing in G
 constexpr double kViolation = 2e-7;  // driving force, in RT per mole of atoms, above which a phase enters
+constexpr double kNear = 0.05;       // height, in RT per mole of atoms, below which a minimum is followed exactly
 constexpr double kArrived = 2e-4;    // distance2 at which a search is on its way to a known place
 constexpr double kSame = 1e-5;       // distance2 below which two places are one
 constexpr double kWarmRange = 60;    // K between neighbours that may start from each other
@@ -417,9 +418,10 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
                     return;
         }
         // Far above the plane the height need not be exact; near it, to the last digit.
-        if (!local.shifted && decrement < std::max(1e-9, 1e-4 * (m.height - 0.01 * kGas * T))) {
+        const double beyond = m.height - kNear * kGas * T * local.atoms;
+        if (!local.shifted && decrement < std::max(1e-9, beyond > 0 ? 0.1 * beyond : 0)) {
             move(model, dz, 1, y);
-            m.height -= decrement / 2;
+            m.height -= beyond > 0 ? decrement : decrement / 2;  // at least what Newton's step promises
             break;
         }
         for (int c = 0; c < n; ++c) change = std::max(change, std::abs(dz[c] * local.root[c]));
@@ -501,7 +503,8 @@ double Solver::prove(Point& p, bool thorough) {
                     if (m.height < found[k].height) found[k] = m;
                     return false;
                 }
-            found.push_back(m);
+            low = std::min(low, m.height);
+            if (m.height < 5 * kNear * RT * m.set.atoms) found.push_back(m);  // what lies higher is only a bound
             return true;
         };
         for (const Minimum& m : p.minima)
@@ -525,9 +528,13 @@ double Solver::prove(Point& p, bool thorough) {
         order.clear();
         double* settled = p.settled.data() + samples.firstKind[f];
         const double reach = (thorough ? 4.0 : 2.0) * RT * most;
-        for (size_t kind = 0; kind < best.size(); ++kind)
-            if (bestAt[kind] >= 0 && best[kind] < reach && (thorough || best[kind] < settled[kind] - kResettle * RT))
+        for (size_t kind = 0; kind < best.size(); ++kind) {
+            if (bestAt[kind] < 0) continue;
+            if (best[kind] < reach && (thorough || best[kind] < settled[kind] - kResettle * RT))
                 order.push_back({best[kind], bestAt[kind]});
+            else if (best[kind] > settled[kind])
+                settled[kind] = best[kind];  // the fall counts from the highest place since the last search
+        }
         std::sort(order.begin(), order.end());
         size_t starts = 0;
         for (const auto& [height, at] : order) {
