@@ -16,6 +16,7 @@ Result<int> helpCommand(const QStringList&) {
       --setpoint C, --band-rule "added up"|"root of squares"
   soakwright triage --csv FILE --store FILE     every heat of a delivery, worst first
       --furnace NAME, --threads N
+      --sheets FOLDER                           also a draft sheet of every row that fits
   soakwright sheet  --store FILE --heat ID --cycle NAME --furnace NAME --pdf FILE
       --setpoint C, --paper a4|letter, --issue NAME   without --issue a draft is written
   soakwright evidence                           published values beside the computed ones, bias and scatter

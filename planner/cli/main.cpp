@@ -38,7 +38,8 @@ std::unique_ptr<QCoreApplication> application(int& argc, char** argv, bool draws
 }  // namespace
 
 int main(int argc, char** argv) {
-    const bool draws = argc > 1 && std::string_view(argv[1]) == "sheet";
+    bool draws = argc > 1 && std::string_view(argv[1]) == "sheet";
+    for (int i = 2; i < argc; ++i) draws = draws || std::string_view(argv[i]) == "--sheets";
     const auto running = application(argc, argv, draws);
     const QStringList given = QCoreApplication::arguments().mid(1);
     if (given.value(0) == "--version") {

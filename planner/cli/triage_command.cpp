@@ -2,12 +2,41 @@
 #include "arguments.h"
 #include "commands.h"
 #include "output.h"
+#include "planner/core/sheet_issue.h"
 #include "planner/core/shop_floor.h"
+#include "planner/sheet/render.h"
+
+#include <QDir>
+#include <QRegularExpression>
 
 namespace soak::cli {
+namespace {
+
+/// A draft sheet for every row that fits, named after heat and cycle; heat numbers may hold what file names must not.
+Result<int> writeSheets(const std::vector<TriageRow>& rows, const Store& store, const Shelf& shelf,
+                        const QString& folder) {
+    if (!QDir().mkpath(folder)) return Error{Fault::store, "cannot make the folder " + folder.toStdString(), {}, {}};
+    int written = 0;
+    for (const TriageRow& row : rows) {
+        if (!row.answer || (row.verdict != Verdict::inside && row.verdict != Verdict::tight)) continue;
+        const auto job = jobFrom(store, row.heat, row.cycle, row.furnace);
+        if (!job) continue;  // a heat of this file that the store does not hold: the triage row stands, a sheet cannot
+        const auto content = draftSheet(store, *row.answer, job.value(), shelf.rules);
+        if (!content) return content.error();
+        QString name = row.heat + " " + row.cycle + " " + row.furnace;
+        name.replace(QRegularExpression("[^A-Za-z0-9 ._-]"), "_");
+        const auto rendered = renderPdf(content.value(), {}, folder + "/" + name + ".pdf", nullptr);
+        if (!rendered) return rendered.error();
+        ++written;
+    }
+    return written;
+}
+
+}  // namespace
 
 Result<int> triageCommand(const QStringList& given) {
-    const auto read = readArguments(given, {"csv", "store", "furnace", "date", "threads", "band-rule"}, {"json"});
+    const auto read =
+        readArguments(given, {"csv", "store", "furnace", "date", "threads", "band-rule", "sheets"}, {"json"});
     if (!read) return read.error();
     const Arguments& arguments = read.value();
     const auto csv = arguments.required("csv"), path = arguments.required("store");
@@ -36,6 +65,11 @@ Result<int> triageCommand(const QStringList& given) {
         print(json);
     } else {
         print(asText(rows));
+    }
+    if (const QString folder = arguments.text("sheets"); !folder.isEmpty()) {
+        const auto written = writeSheets(rows, store.value(), shelf.value(), folder);
+        if (!written) return written.error();
+        if (!arguments.has("json")) print(QString("%1 draft sheets written to %2\n").arg(written.value()).arg(folder));
     }
     return needsDecision(rows) ? kNeedsDecision : 0;
 }
