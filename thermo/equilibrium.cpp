@@ -835,7 +835,7 @@ Result<Done> Solver::solveCold(double T) {
         point_ = std::move(q);
         return Done{};
     }
-    return Error{Fault::noConvergence, "the equilibrium at " + celsiusText(T) + " did not converge", "", {}};
+    return Error{Fault::noConvergence, "the equilibrium at " + inCelsius(T) + " did not converge", "", {}};
 }
 
 Result<Done> Solver::solve(double T) {

@@ -249,7 +249,7 @@ Result<Event> Alloy::Inside::solveBetween(double from_K, double to_K,
     const double first = low, last = high;
     if (atLow * atHigh > 0)
         return Error{
-            Fault::range, "the value is not reached between " + celsiusText(low) + " and " + celsiusText(high), "", {}};
+            Fault::range, "the value is not reached between " + inCelsius(low) + " and " + inCelsius(high), "", {}};
     Event event;
     for (int turn = 0; turn < 80; ++turn) {
         const double share = turn % 3 == 2 || atLow == atHigh ? 0.5 : std::clamp(atLow / (atLow - atHigh), 0.1, 0.9);

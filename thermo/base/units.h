@@ -13,7 +13,7 @@ inline constexpr double celsius(double kelvin) { return kelvin - 273.15; }
 inline constexpr double fahrenheit(double celsius) { return celsius * 1.8 + 32.0; }
 inline constexpr double celsiusFromFahrenheit(double fahrenheit) { return (fahrenheit - 32.0) / 1.8; }
 /// "1050.0 °C" for a message, from kelvin.
-inline std::string celsiusText(double kelvin) {
+inline std::string inCelsius(double kelvin) {
     char text[32];
     std::snprintf(text, sizeof text, "%.1f °C", celsius(kelvin));
     return text;
