@@ -97,6 +97,7 @@ Result<Alloy> Alloy::make(std::shared_ptr<const DataSet> data, const Chemistry& 
     for (double& x : b) x /= inside->molesPer100g;
     inside->data = data;
     inside->chemistry = chemistry;
+    inside->choice = choice;
     inside->repeat = commandFor(chemistry, choice);
     inside->system = data->system(present);
     std::vector<char> allowed;
@@ -114,6 +115,13 @@ Result<Alloy> Alloy::make(std::shared_ptr<const DataSet> data, const Chemistry& 
     return Alloy(std::move(inside));
 }
 
+Result<Alloy> Alloy::changed(const Chemistry& chemistry) const {
+    auto other = make(inside_->data, chemistry, inside_->choice);
+    if (other && other.value().inside_->system == inside_->system)
+        other.value().inside_->solver->startFrom(inside_->solver->point());
+    return other;
+}
+
 Error Alloy::Inside::failed(Error error, double T) const {
     error.repeat = repeat + " --at " + number(celsius(T));
     return error;
@@ -122,6 +130,10 @@ Error Alloy::Inside::failed(Error error, double T) const {
 Result<Done> Alloy::Inside::solve(double T) {
     if (!(T >= 300 && T <= 6000))
         return Error{Fault::range, number(T) + " K lies outside the data's range, 300 to 6000 K", "", {}};
+    const auto distance = [T](const Point& p) { return std::abs(p.T - T); };
+    const auto nearest = std::min_element(starts.begin(), starts.end(),
+                                          [&](const Point& x, const Point& y) { return distance(x) < distance(y); });
+    if (nearest != starts.end() && distance(*nearest) + 10 < distance(solver->point())) solver->startFrom(*nearest);
     auto done = solver->solve(T);
     if (!done) return failed(std::move(done).error(), T);
     return done;

@@ -16,6 +16,7 @@ namespace soak {
 struct Alloy::Inside {
     std::shared_ptr<const DataSet> data;
     Chemistry chemistry;
+    PhaseChoice choice;
     std::string repeat;  ///< command line that repeats a state of this alloy, without temperature
     std::shared_ptr<const System> system;
     std::vector<double> mass;  ///< g/mol, in the system's order
@@ -23,6 +24,10 @@ struct Alloy::Inside {
     std::unique_ptr<Solver> solver;
     /// Temperatures (K) at which the heating phase (ferrite) is known to be absent or present: see labelAt.
     double absentAt = 0, presentUpTo = 0;
+
+    /// States of the last sweep, without what only speeds up their neighbours: where a state far from the last one
+    /// starts.
+    std::vector<Point> starts;
 
     Error failed(Error error, double T) const;
     Result<Done> solve(double T);

@@ -203,12 +203,21 @@ private:
 Result<Sweep> Alloy::sweep(double from_K, double to_K) {
     Inside& in = *inside_;
     if (!(to_K > from_K)) return Error{Fault::input, "a sweep runs from a lower to a higher temperature", "", {}};
+    in.starts.clear();
     Walk walk(in);
     auto done = walk.run(from_K, to_K);
     if (!done) return std::move(done).error();
     std::stable_sort(walk.events.begin(), walk.events.end(), [](const Found& x, const Found& y) { return x.T < y.T; });
 
     // The heating name (delta ferrite) holds from where the set appears until it vanishes again.
+    in.starts.clear();
+    for (const Point& point : walk.points) {
+        Point start;
+        start.T = point.T;
+        start.sets = point.sets;
+        start.mu = point.mu;
+        in.starts.push_back(std::move(start));
+    }
     bool heated = in.formsOnHeating(walk.points.front());
     Sweep sweep;
     size_t next = 0;

@@ -102,7 +102,7 @@ Result<Event> AlloyReport::solve(const Quantity& quantity, double value, double 
         Chemistry moved = alloy_->chemistry();
         const double step = compositionStep_wt(content);
         moved.wt[element] = content + step;
-        auto other = Alloy::make(data_, moved, choice_);
+        auto other = alloy_->changed(moved);
         if (!other) return std::move(other).error();
         const auto state = other.value().stateAt(T);
         if (!state) return state.error();
