@@ -135,10 +135,10 @@ Result<Done> computeEvidence(std::vector<EvidenceRow>& rows) {
                 row.reason = QString::fromStdString(std::move(computed).error().text());
         }
     };
-    std::vector<std::thread> helpers;
-    for (unsigned n = 1; n < std::max(1U, std::thread::hardware_concurrency()); ++n) helpers.emplace_back(work);
+    std::vector<std::thread> workers;
+    for (unsigned n = 1; n < std::max(1U, std::thread::hardware_concurrency()); ++n) workers.emplace_back(work);
     work();
-    for (std::thread& helper : helpers) helper.join();
+    for (std::thread& worker : workers) worker.join();
     return Done{};
 }
 
