@@ -52,13 +52,38 @@ QString takeElement(const QString& header, AmountUnit& unit) {
 /// Words of the other columns, English and German, each part of "Schmelze / Heat" on its own.
 QString meaningOf(const QString& header) {
     static const std::map<QString, QString> words = {
-        {"heat", "heat"},          {"heat no", "heat"},      {"heat number", "heat"},  {"cast", "heat"},
-        {"schmelze", "heat"},      {"schmelze nr", "heat"},  {"charge", "heat"},       {"grade", "grade"},
-        {"werkstoff", "grade"},    {"material", "grade"},    {"steel grade", "grade"}, {"product", "form"},
-        {"product form", "form"},  {"product_form", "form"}, {"erzeugnis", "form"},    {"section_mm", "section"},
-        {"section", "section"},    {"abm", "section"},       {"dimension", "section"}, {"melt_route", "route"},
-        {"melt route", "route"},   {"erschm", "route"},      {"kind", "kind"},         {"analysis", "kind"},
-        {"analysis kind", "kind"}, {"art", "kind"},          {"l/p", "kind"}};
+        {"heat", "heat"},
+        {"heat no", "heat"},
+        {"heat number", "heat"},
+        {"cast", "heat"},
+        {"schmelze", "heat"},
+        {"schmelze nr", "heat"},
+        {"charge", "heat"},
+        {"grade", "grade"},
+        {"werkstoff", "grade"},
+        {"material", "grade"},
+        {"steel grade", "grade"},
+        {"product", "form"},
+        {"product form", "form"},
+        {"product_form", "form"},
+        {"erzeugnis", "form"},
+        {"section_mm", "section"},
+        {"section", "section"},
+        {"abm", "section"},
+        {"dimension", "section"},
+        {"melt_route", "route"},
+        {"melt route", "route"},
+        {"erschm", "route"},
+        {"kind", "kind"},
+        {"analysis", "kind"},
+        {"analysis kind", "kind"},
+        {"art", "kind"},
+        {"l/p", "kind"},
+        // the sum of what is not named, and the largest of it, in light metal certificates
+        {"others each", QString::fromStdString(kOthersEach)},
+        {"others total", QString::fromStdString(kOthersTotal)},
+        {"andere einzeln", QString::fromStdString(kOthersEach)},
+        {"andere gesamt", QString::fromStdString(kOthersTotal)}};
     static const QRegularExpression unit_in_brackets(R"(\s*[\[(].*[\])])"), marks(R"([.:]+$)");
     QString text = header.toLower();
     text.remove(unit_in_brackets);
@@ -73,7 +98,10 @@ QString meaningOf(const QString& header) {
 
 }  // namespace
 
-bool CertificateColumns::isElement(qsizetype column) const { return elements().contains(taken_for[column]); }
+bool CertificateColumns::isElement(qsizetype column) const {
+    static const QStringList others = {QString::fromStdString(kOthersEach), QString::fromStdString(kOthersTotal)};
+    return elements().contains(taken_for[column]) || others.contains(taken_for[column]);
+}
 
 int CertificateColumns::elementCount() const {
     int count = 0;

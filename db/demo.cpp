@@ -26,18 +26,27 @@ Result<Done> storeLibrary(Store& store) {
     return store.storeCautions(cautions.value());
 }
 
-Result<Done> storeShop(Store& store) {
-    const Result<ShopFile> file = readShopFile(demoFolder() + "/shop.json");
+/// One bay of the shop: its quenches, furnaces and cycles, and the delivery that waits in it.
+Result<Done> storeBay(Store& store, const QString& shop_file, const QString& heats) {
+    const Result<ShopFile> file = readShopFile(demoFolder() + "/" + shop_file);
     if (!file) return file.error();
-    if (Result<Done> done = store.setShop(file.value().shop); !done) return done;
+    if (file.value().shop)
+        if (Result<Done> done = store.setShop(*file.value().shop); !done) return done;
     if (Result<Done> done = store.storeQuenches(file.value().quenches); !done) return done;
     if (Result<Done> done = store.storeFurnaces(file.value().furnaces); !done) return done;
     if (Result<Done> done = store.storeCycles(file.value().cycles); !done) return done;
-    const Result<Certificate> delivery = readCertificate(demoFolder() + "/heats.csv");
+    const Result<Certificate> delivery = readCertificate(demoFolder() + "/" + heats);
     if (!delivery) return delivery.error();
-    const Result<int> stored = store.storeHeats(delivery.value().heats(), "heats.csv", file.value().shop.today);
+    const Result<Shop> shop = store.shop();
+    if (!shop) return shop.error();
+    const Result<int> stored = store.storeHeats(delivery.value().heats(), heats, shop.value().today);
     if (!stored) return stored.error();
     return Done{};
+}
+
+Result<Done> storeShop(Store& store) {
+    if (Result<Done> done = storeBay(store, "shop.json", "heats.csv"); !done) return done;
+    return storeBay(store, "light_bay.json", "light_heats.csv");
 }
 
 void removeStore(const QString& path) {

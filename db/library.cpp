@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "db/library.h"
 
+#include <QDir>
 #include <QRegularExpression>
 #include <set>
 
@@ -47,6 +48,27 @@ Result<std::vector<Record>> readKeyedRows(const QString& path, const QStringList
     return readRows(path, columns, read);
 }
 
+/// One table may be spread over several files, one for each family of alloys: "grades.csv", "grades_light.csv". Ids
+/// stand once in all of them.
+template <class Record>
+Result<std::vector<Record>> readFamilyTables(const QString& folder, const QString& name, const QStringList& columns,
+                                             Result<Record> (*read)(const CsvTable&, size_t), QString Record::*id) {
+    std::vector<Record> all;
+    std::set<QString> seen;
+    for (const QString& file : QDir(folder).entryList({name + ".csv", name + "_*.csv"}, QDir::Files, QDir::Name)) {
+        Result<std::vector<Record>> records = readKeyedRows<Record>(folder + "/" + file, columns, read);
+        if (!records) return records;
+        for (Record& record : records.value()) {
+            if (!seen.insert(record.*id).second)
+                return Error{
+                    Fault::data, (file + ": \"" + record.*id + "\" stands in another file too").toStdString(), {}, {}};
+            all.push_back(std::move(record));
+        }
+    }
+    if (all.empty()) return readKeyedRows<Record>(folder + "/" + name + ".csv", columns, read);  // says what is missing
+    return all;
+}
+
 /// "S31803 (near)" is a near equivalent, whose limits differ.
 void sortNames(const QString& cell, Grade& grade) {
     static const QString mark = "(near)";
@@ -57,8 +79,15 @@ void sortNames(const QString& cell, Grade& grade) {
     }
 }
 
+/// "Others_each" -> the word that stands for it beside the symbols; a symbol stands for itself.
+std::string limitKey(const QString& column) {
+    if (column == "Others_each") return kOthersEach;
+    if (column == "Others_total") return kOthersTotal;
+    return column.toStdString();
+}
+
 Result<Grade> gradeOf(const CsvTable& table, size_t row) {
-    static const QRegularExpression minimum_column("^([A-Z][a-z]?)_min$");
+    static const QRegularExpression minimum_column("^([A-Z][a-z]?|Others_each|Others_total)_min$");
     static const QRegularExpression rule_syntax(
         R"(^([A-Za-z]+ = )?[A-Z][A-Za-z0-9.*/+() ]*(<=|>=) ?[A-Z0-9(][A-Za-z0-9.*/+() ]*$)");
     Grade grade;
@@ -85,9 +114,11 @@ Result<Grade> gradeOf(const CsvTable& table, size_t row) {
         if (low.value() && high.value() && *low.value() > *high.value())
             return table.error(row, column,
                                "minimum " + table.text(row, column) + " above maximum " + table.text(row, max_column));
-        grade.limits[element.toStdString()] = {low.value(), high.value(), table.text(row, column),
-                                               table.text(row, max_column)};
+        grade.limits[limitKey(element)] = {low.value(), high.value(), table.text(row, column),
+                                           table.text(row, max_column)};
     }
+    const QString balance = table.columns().contains("balance") ? table.text(row, "balance") : QString();
+    if (!balance.isEmpty()) grade.limits[balance.toStdString()].min_text = kBalanceText;
     return grade;
 }
 
@@ -162,16 +193,16 @@ Result<FamilyLink> familyLinkOf(const CsvTable& table, size_t row) {
 QString libraryFolder() { return QString::fromStdString(productPath("db/library").string()); }
 
 Result<std::vector<Grade>> readGrades(const QString& folder) {
-    return readKeyedRows<Grade>(folder + "/grades.csv",
-                                {"grade_id", "names", "standard", "edition", "family", "rules", "seen", "note"},
-                                gradeOf);
+    return readFamilyTables<Grade>(folder, "grades",
+                                   {"grade_id", "names", "standard", "edition", "family", "rules", "seen", "note"},
+                                   gradeOf, &Grade::id);
 }
 
 Result<std::vector<PublishedTreatment>> readTreatments(const QString& folder) {
-    return readKeyedRows<PublishedTreatment>(folder + "/published_treatments.csv",
-                                             {"row_id", "grade_key", "kind", "t_min_C", "t_max_C", "hold_rule",
-                                              "quench", "result", "source", "seen", "note"},
-                                             treatmentOf);
+    return readFamilyTables<PublishedTreatment>(folder, "published_treatments",
+                                                {"row_id", "grade_key", "kind", "t_min_C", "t_max_C", "hold_rule",
+                                                 "quench", "result", "source", "seen", "note"},
+                                                treatmentOf, &PublishedTreatment::row_id);
 }
 
 Result<std::vector<Caution>> readCautions(const QString& folder) {

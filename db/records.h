@@ -53,8 +53,13 @@ struct Heat {
 
 struct GradeLimit {
     std::optional<double> min_wt, max_wt;
-    QString min_text, max_text;
+    QString min_text, max_text;  ///< as printed; "balance" as the minimum of the element that takes the rest
 };
+
+/// Limits of all elements that a grade does not name, for each of them and for their sum, stand under these words
+/// beside the symbols; so may a certificate's own figures.
+inline const std::string kOthersEach = "others each", kOthersTotal = "others total";
+inline const QString kBalanceText = "balance";
 
 /// One row of the grade library: one grade in one standard and edition.
 struct Grade {
@@ -65,6 +70,13 @@ struct Grade {
     std::map<std::string, GradeLimit> limits;  ///< by element symbol, wt%
     QStringList rules;                         ///< "Ti >= 5*C", "PRE = Cr + 3.3*Mo + 16*N >= 40"
     QString seen, note;
+
+    /// The element that takes the rest: iron where the row names none.
+    std::string balance() const {
+        for (const auto& [element, limit] : limits)
+            if (limit.min_text == kBalanceText) return element;
+        return "Fe";
+    }
 };
 
 /// A survey's result at one temperature, signed deviations from setpoint, K.

@@ -171,9 +171,12 @@ Result<ShopFile> readShopFile(const QString& path) {
             Fault::data, QString("%1 at byte %2").arg(parse.errorString()).arg(parse.offset).toStdString(), {}, {name}};
     const QJsonObject root = document.object();
     ShopFile file;
-    Fields shop(root.value("shop"), "shop");
-    file.shop = shopOf(shop);
-    std::optional<Error> error = shop.error();
+    std::optional<Error> error;
+    if (root.contains("shop")) {
+        Fields shop(root.value("shop"), "shop");
+        file.shop = shopOf(shop);
+        error = shop.error();
+    }
     if (!error) error = readList(root.value("quenches").toArray(), "quench", quenchOf, file.quenches);
     if (!error) error = readList(root.value("furnaces").toArray(), "furnace", furnaceOf, file.furnaces);
     if (!error) error = readList(root.value("cycles").toArray(), "cycle", cycleOf, file.cycles);

@@ -11,7 +11,7 @@ namespace soak {
 /// A whole shop as one JSON file: rules, quenches, furnaces, cycles with their limits (db/demo/shop.json shows every
 /// field).
 struct ShopFile {
-    Shop shop;
+    std::optional<Shop> shop;  ///< nothing in a file that adds a bay to a shop
     std::vector<Quench> quenches;
     std::vector<Furnace> furnaces;
     std::vector<Cycle> cycles;

@@ -6,6 +6,7 @@
 #include <QStringList>
 
 #include "db/content.h"
+#include "planner/core/grade_check.h"
 
 namespace soak::cli {
 namespace {
@@ -75,6 +76,7 @@ Result<TypedChemistry> readChemistry(const QString& text) {
         typed.analysis[symbol.toStdString()] = content.value();
     }
     if (typed.analysis.empty() && typed.balance.isEmpty()) return refuse("no element given; write C=0.05,Cr=18,Ni=10");
+    if (typed.balance.isEmpty()) typed.balance = QString::fromStdString(baseMetal(typed.analysis));
     if (sum > 100) return refuse(QString("the amounts add up to %1 %, more than 100 %").arg(sum, 0, 'f', 2));
     return typed;
 }

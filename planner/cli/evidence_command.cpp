@@ -5,7 +5,7 @@
 #include "arguments.h"
 #include "commands.h"
 #include "output.h"
-#include "planner/core/evidence.h"
+#include "planner/core/evidence_targets.h"
 #include "planner/core/units_text.h"
 
 namespace soak::cli {
@@ -80,11 +80,32 @@ QString summaryText(const std::vector<EvidenceGroup>& groups) {
     return text;
 }
 
-QString asText(const std::vector<EvidenceRow>& rows) {
+QString targetsText(const std::vector<EvidenceTarget>& targets) {
+    QString text;
+    for (const EvidenceTarget& target : targets) {
+        if (target.reached.count == 0) continue;
+        text += "  " + elided(target.what, 50) + QString::number(target.reached.count).rightJustified(5) +
+                figure(target.reached.mean, target.unit, true).rightJustified(9) +
+                figure(target.reached.deviation, target.unit).rightJustified(9) + " / " +
+                figure(target.deviation, target.unit) +
+                figure(target.reached.worst, target.unit, true).rightJustified(9) + " / " +
+                figure(target.worst, target.unit) + "  " + differenceUnit(target.unit) + "  " +
+                (target.isLittle() ? "too little evidence"
+                 : target.isMet()  ? "met"
+                                   : "missed") +
+                (target.missed.isEmpty() ? "" : ": " + target.missed.join(" ")) + "\n";
+    }
+    if (text.isEmpty()) return {};
+    return "\nTargets on firm rows" +
+           QString("rows     mean  st. dev. / target   worst / target\n").rightJustified(80) + text;
+}
+
+QString asText(const std::vector<EvidenceRow>& rows, const std::vector<EvidenceTarget>& targets) {
     QString text =
         QString("row    ") + QString("quantity").leftJustified(44) + " published  computed     diff.  unit\n";
     for (const EvidenceRow& row : rows) text += rowText(row);
     text += summaryText(evidenceGroups(rows));
+    text += targetsText(targets);
     const auto computed = std::count_if(rows.begin(), rows.end(), [](const auto& row) { return row.computed; });
     const auto judged = std::count_if(rows.begin(), rows.end(), [](const auto& row) { return row.isJudged(); });
     const auto hits = std::count_if(rows.begin(), rows.end(), [](const auto& row) { return row.isHit(); });
@@ -141,6 +162,23 @@ Json asJson(const EvidenceGroup& group) {
                 {"little_evidence", group.isLittle()}};
 }
 
+Json asJson(const EvidenceTarget& target) {
+    Json missed = Json::array();
+    for (const QString& id : target.missed) missed.push_back(id.toStdString());
+    return Json{{"target", target.id.toStdString()},
+                {"what", target.what.toStdString()},
+                {"unit", differenceUnit(target.unit).toStdString()},
+                {"count", target.reached.count},
+                {"mean", target.reached.count > 0 ? Json(target.reached.mean) : Json(nullptr)},
+                {"standard_deviation", target.reached.count > 1 ? Json(target.reached.deviation) : Json(nullptr)},
+                {"target_standard_deviation", target.deviation},
+                {"worst", target.reached.count > 0 ? Json(target.reached.worst) : Json(nullptr)},
+                {"target_worst", target.worst},
+                {"missed", missed},
+                {"little_evidence", target.isLittle()},
+                {"met", target.isMet()}};
+}
+
 Result<Done> save(const QString& path, const QString& text) {
     QSaveFile file(path);
     const QByteArray bytes = text.toUtf8();
@@ -187,13 +225,16 @@ Result<int> evidenceCommand(const QStringList& given) {
     }
     if (!baseline.isEmpty())
         if (auto done = save(baseline, baselineText(chosen)); !done) return std::move(done).error();
+    const auto targets = evidenceTargets(chosen);
+    if (!targets) return targets.error();
     if (arguments.has("json")) {
-        Json json{{"rows", Json::array()}, {"groups", Json::array()}};
+        Json json{{"rows", Json::array()}, {"groups", Json::array()}, {"targets", Json::array()}};
         for (const EvidenceRow& row : chosen) json["rows"].push_back(asJson(row));
         for (const EvidenceGroup& group : evidenceGroups(chosen)) json["groups"].push_back(asJson(group));
+        for (const EvidenceTarget& target : targets.value()) json["targets"].push_back(asJson(target));
         print(json);
     } else {
-        print(asText(chosen));
+        print(asText(chosen, targets.value()));
     }
     return 0;
 }

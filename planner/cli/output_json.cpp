@@ -136,7 +136,9 @@ Json asJson(const TriageRow& row) {
             {"suggested_setpoint_C", optional(row.suggested_setpoint_C)},
             {"reason", plain(row.reason)},
             {"grade_check", plain(row.grade_verdict)},
-            {"findings", list(row.findings)}};
+            {"findings", list(row.findings)},
+            {"data_set", row.answer ? plain(row.answer->data_set) : ""},
+            {"data_version", row.answer ? plain(row.answer->data_version) : ""}};
 }
 
 void print(const Json& json) {

@@ -105,6 +105,13 @@ QString asText(const std::vector<TriageRow>& rows) {
                 "  " + (row.grade_verdict.isEmpty() ? "" : "grade " + row.grade_verdict) + "\n    " + row.reason + "\n";
         for (const QString& finding : row.findings) text += "    - " + finding + "\n";
     }
+    QStringList sets;
+    for (const TriageRow& row : rows)
+        if (row.answer && !row.answer->data_set.isEmpty())
+            sets << row.answer->data_set + " " + row.answer->data_version;
+    sets.removeDuplicates();
+    sets.sort();
+    if (!sets.isEmpty()) text += "Data " + sets.join(", ") + "\n";
     return text;
 }
 

@@ -9,7 +9,12 @@
 namespace soak::cli {
 namespace {
 
-Result<Alloy> alloyFrom(const Arguments& arguments) {
+struct Question {
+    Alloy alloy;
+    DataSetFacts set;
+};
+
+Result<Question> questionFrom(const Arguments& arguments) {
     const auto text = arguments.required("wt");
     if (!text) return text.error();
     const auto typed = readChemistry(text.value());
@@ -18,7 +23,19 @@ Result<Alloy> alloyFrom(const Arguments& arguments) {
     if (!data) return std::move(data).error();
     const auto chemistry = plainChemistry(typed.value(), QString::fromStdString(facts(*data.value()).balance));
     if (!chemistry) return chemistry.error();
-    return Alloy::make(data.value(), chemistry.value(), phaseChoice(arguments));
+    auto alloy = Alloy::make(data.value(), chemistry.value(), phaseChoice(arguments));
+    if (!alloy) return std::move(alloy).error();
+    return Question{std::move(alloy).value(), facts(*data.value())};
+}
+
+/// Which data stand behind an answer.
+Json setAsJson(Json answer, const DataSetFacts& set) {
+    answer["data_set"] = set.name;
+    answer["data_version"] = set.version;
+    return answer;
+}
+QString setAsText(const DataSetFacts& set) {
+    return QString("Data %1 %2\n").arg(QString::fromStdString(set.name), QString::fromStdString(set.version));
 }
 
 }  // namespace
@@ -28,11 +45,13 @@ Result<int> stateCommand(const QStringList& given) {
     if (!arguments) return arguments.error();
     const auto at_C = temperatureIn(arguments.value(), "at");
     if (!at_C) return at_C.error();
-    auto alloy = alloyFrom(arguments.value());
-    if (!alloy) return std::move(alloy).error();
-    const auto state = alloy.value().stateAt(kelvin(at_C.value()));
+    auto question = questionFrom(arguments.value());
+    if (!question) return std::move(question).error();
+    const auto state = question.value().alloy.stateAt(kelvin(at_C.value()));
     if (!state) return state.error();
-    arguments.value().has("json") ? print(asJson(state.value())) : print(asText(state.value()));
+    const DataSetFacts& set = question.value().set;
+    arguments.value().has("json") ? print(setAsJson(asJson(state.value()), set))
+                                  : print(asText(state.value()) + setAsText(set));
     return 0;
 }
 
@@ -43,19 +62,20 @@ Result<int> sweepCommand(const QStringList& given) {
     if (!from_C) return from_C.error();
     if (!to_C) return to_C.error();
     if (from_C.value() >= to_C.value()) return Error{Fault::input, "--from must be below --to", {}, {}};
-    auto alloy = alloyFrom(arguments.value());
-    if (!alloy) return std::move(alloy).error();
-    const auto sweep = alloy.value().sweep(kelvin(from_C.value()), kelvin(to_C.value()));
+    auto question = questionFrom(arguments.value());
+    if (!question) return std::move(question).error();
+    const auto sweep = question.value().alloy.sweep(kelvin(from_C.value()), kelvin(to_C.value()));
     if (!sweep) return sweep.error();
 
     if (!arguments.value().has("json")) {
         for (const Event& event : sweep.value().events) print(asText(event));
+        print(setAsText(question.value().set));
         return 0;
     }
     Json json{{"states", Json::array()}, {"events", Json::array()}};
     for (const State& state : sweep.value().states) json["states"].push_back(asJson(state));
     for (const Event& event : sweep.value().events) json["events"].push_back(asJson(event));
-    print(json);
+    print(setAsJson(std::move(json), question.value().set));
     return 0;
 }
 

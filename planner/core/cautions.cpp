@@ -6,34 +6,71 @@
 namespace soak {
 namespace {
 
-bool mentions(const QString& text, const char* word) { return text.contains(word, Qt::CaseInsensitive); }
+/// When a subject of the cautions table applies: every text that is not empty must be met. Words of one text are
+/// alternatives; furnace and medium are searched for them, a family must begin with one, a kind must be one.
+struct SubjectRow {
+    const char *applies_to, *medium = "", *furnace = "", *family = "", *kind = "", *not_furnace = "";
+    double from_C = 0;
+};
+const SubjectRow kSubjects[] = {
+    {"medium: water quench", "water"},
+    {"medium: oil quench", "oil"},
+    {"medium: polymer quench", "polymer"},
+    {"atmosphere: nitrogen or argon", "nitrogen|argon"},
+    {"medium: vacuum furnace", "", "vacuum"},
+    {"atmosphere: endothermic", "", "endothermic"},
+    {"atmosphere: flammable", "", "endothermic"},
+    {"medium: gas-fired furnace", "", "gas", "", "", "vacuum"},
+    {"medium: electric furnace", "", "electric"},
+    {"medium: salt bath", "", "salt"},
+    {"treatment: solution-anneal stainless", "", "",
+     "austenitic|superaustenitic|heat-resistant-austenitic|cast-austenitic|duplex|lean-duplex|superduplex|cast-duplex|"
+     "ferritic|martensitic-stainless|precipitation-hardening",
+     "solution-anneal"},
+    {"treatment: solution-anneal high-temperature", "", "", "", "solution-anneal", "", 1100},
+    {"treatment: harden", "", "", "", "harden"},
+    {"treatment: harden high-speed steel", "", "", "high-speed", "harden"},
+    {"treatment: anneal or normalise", "", "", "", "normalise|full-anneal"},
+    {"medium: nitrate salt bath, aluminium", "", "nitrate", "light-"},
+    {"treatment: aluminium solution", "", "", "light-", "solution-anneal|homogenise"},
+    {"treatment: aluminium quench", "water|polymer", "", "light-", "solution-anneal"},
+    {"treatment: aluminium castings", "", "", "light-cast-", "solution-anneal|homogenise"},
+    {"treatment: aluminium ageing", "", "", "light-", "age"},
+};
+
+QStringList words(const char* text) { return QString(text).split('|', Qt::SkipEmptyParts); }
+
+/// Whether one of the words is met; no words at all are met by everything.
+template <class Met>
+bool anyOf(const char* text, Met met) {
+    const QStringList all = words(text);
+    return all.isEmpty() || std::any_of(all.begin(), all.end(), met);
+}
 
 /// The words of Caution::applies_to that this job brings with it.
 QStringList subjectsOf(const Cycle& cycle, const QString& family, const Furnace& furnace, const QString& medium,
                        double setpoint_C) {
     QStringList subjects;
-    const bool stainless = mentions(family, "austenitic") || mentions(family, "duplex") ||
-                           mentions(family, "stainless") || mentions(family, "ferritic") ||
-                           mentions(family, "precipitation");
-    const auto add = [&](bool applies, const char* subject) {
-        if (applies) subjects << subject;
-    };
-    add(mentions(medium, "water"), "medium: water quench");
-    add(mentions(medium, "oil"), "medium: oil quench");
-    add(mentions(medium, "polymer"), "medium: polymer quench");
-    add(mentions(medium, "nitrogen") || mentions(medium, "argon"), "atmosphere: nitrogen or argon");
-    add(mentions(furnace.kind, "vacuum"), "medium: vacuum furnace");
-    add(mentions(furnace.kind, "endothermic"), "atmosphere: endothermic");
-    add(mentions(furnace.kind, "endothermic"), "atmosphere: flammable");
-    add(mentions(furnace.kind, "gas") && !mentions(furnace.kind, "vacuum"), "medium: gas-fired furnace");
-    add(mentions(furnace.kind, "electric"), "medium: electric furnace");
-    add(mentions(furnace.kind, "salt"), "medium: salt bath");
-    add(cycle.kind == "solution-anneal" && stainless, "treatment: solution-anneal stainless");
-    add(cycle.kind == "solution-anneal" && setpoint_C >= 1100, "treatment: solution-anneal high-temperature");
-    add(cycle.kind == "harden", "treatment: harden");
-    add(cycle.kind == "harden" && family == "high-speed", "treatment: harden high-speed steel");
-    add(cycle.kind == "normalise" || cycle.kind == "full-anneal", "treatment: anneal or normalise");
+    for (const SubjectRow& row : kSubjects) {
+        const auto in = [](const QString& text) {
+            return [&text](const QString& word) { return text.contains(word, Qt::CaseInsensitive); };
+        };
+        const bool excluded = *row.not_furnace && anyOf(row.not_furnace, in(furnace.kind));
+        if (!excluded && anyOf(row.medium, in(medium)) && anyOf(row.furnace, in(furnace.kind)) &&
+            anyOf(row.family, [&](const QString& word) { return family.startsWith(word); }) &&
+            anyOf(row.kind, [&](const QString& word) { return cycle.kind == word; }) && setpoint_C >= row.from_C)
+            subjects << row.applies_to;
+    }
     return subjects;
+}
+
+/// "alloy: leaded aluminium (2007 2011 6262)" speaks of the grades in its brackets.
+bool speaksOfGrade(const Caution& caution, const Cycle& cycle) {
+    if (!caution.applies_to.startsWith("alloy: ")) return false;
+    const QStringList named = caution.applies_to.section('(', 1).section(')', 0, 0).split(' ', Qt::SkipEmptyParts);
+    return std::any_of(named.begin(), named.end(), [&](const QString& name) {
+        return cycle.grades.contains(name) || cycle.grades.contains(name + ".0");
+    });
 }
 
 int rankOf(const QString& severity) { return severity == "danger" ? 0 : severity == "warning" ? 1 : 2; }
@@ -46,7 +83,7 @@ std::vector<Caution> cautionsFor(const std::vector<Caution>& all, const Cycle& c
     const QStringList subjects = subjectsOf(cycle, family, furnace, quench_medium, setpoint_C);
     std::vector<Caution> special, general;
     for (const Caution& caution : all) {
-        if (subjects.contains(caution.applies_to)) special.push_back(caution);
+        if (subjects.contains(caution.applies_to) || speaksOfGrade(caution, cycle)) special.push_back(caution);
         if (caution.applies_to == "treatment: any") general.push_back(caution);
     }
     // Of equal danger the shorter line comes first: it is the one that is read.

@@ -100,6 +100,8 @@ QString word(EvidenceClass weight) {
     return {};
 }
 
+QString EvidenceRow::dataSet() const { return id.startsWith("lt") ? "light" : "ferrous"; }
+
 std::optional<double> EvidenceRow::difference() const {
     if (!computed || !value) return std::nullopt;
     return *computed - *value;
@@ -119,16 +121,19 @@ Result<std::vector<EvidenceRow>> readEvidence() {
 }
 
 Result<Done> computeEvidence(std::vector<EvidenceRow>& rows) {
-    auto ferrous = loadDataSet(productPath("thermo/data/ferrous"));
-    if (!ferrous) return std::move(ferrous).error();
-    auto light = loadDataSet(productPath("thermo/data/light"));
-    if (!light) return std::move(light).error();
+    std::map<QString, std::shared_ptr<const DataSet>> sets;
+    for (const EvidenceRow& row : rows) {
+        if (sets.count(row.dataSet())) continue;
+        auto set = loadDataSet(productPath("thermo/data") / row.dataSet().toStdString());
+        if (!set) return std::move(set).error();
+        sets[row.dataSet()] = std::move(set).value();
+    }
 
     std::atomic<size_t> next{0};
     const auto work = [&] {
         for (size_t at = next++; at < rows.size(); at = next++) {
             EvidenceRow& row = rows[at];
-            const auto& data = row.id.startsWith("lt") ? light.value() : ferrous.value();
+            const auto& data = sets.at(row.dataSet());
             if (auto computed = computeRow(row, data, row.remark))
                 row.computed = computed.value();
             else

@@ -30,6 +30,7 @@ struct EvidenceRow {
     QString reason;                  ///< why there is no computed value, in words
     QString remark;                  ///< what was done on the way: "B left out of the equilibrium"
 
+    QString dataSet() const;                   ///< folder of thermo/data that computes it, by the id's first letters
     std::optional<double> difference() const;  ///< computed minus published
     bool isJudged() const;                     ///< computed, and the row states its scatter
     bool isHit() const;                        ///< judged, and within twice the row's scatter

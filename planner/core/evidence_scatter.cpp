@@ -104,11 +104,10 @@ Result<QString> modelScatterTable(const std::vector<EvidenceRow>& rows) {
     for (const EvidenceRow& row : rows) {
         const auto families = map.value().find(row.family);  // binaries speak for the data, not for a grade family
         if (row.weight == EvidenceClass::calibration || !row.difference() || families == map.value().end()) continue;
-        if (families->second.contains(kEvery) || families->second.contains("light-*")) continue;
-        for (const QString& limit : limitsOf(row)) {
-            for (const QString& family : families->second) by_limit[limit][family].push_back(&row);
-            by_limit[limit][kEvery].push_back(&row);
-        }
+        if (families->second.contains(kEvery)) continue;
+        const QStringList speaks_for = families->second + QStringList{everyFamilyOf(row.dataSet())};
+        for (const QString& limit : limitsOf(row))
+            for (const QString& family : speaks_for) by_limit[limit][family].push_back(&row);
     }
     QString text = head(book.value());
     for (const auto& [limit, families] : by_limit) {

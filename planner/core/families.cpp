@@ -119,13 +119,25 @@ Result<Done> readLaboratory(FamilyBook& book) {
     return Done{};
 }
 
-Result<Done> readSweeps(FamilyBook& book) {
+std::map<std::string, double> amounts(const toml::table& row, std::string_view key) {
+    std::map<std::string, double> all;
+    if (const auto* list = row[key].as_table())
+        for (const auto& [element, wt] : *list) all[std::string(element.str())] = wt.value_or(0.0);
+    return all;
+}
+
+Result<Done> readUses(FamilyBook& book) {
     const auto table = readTable("sweep.toml");
     if (!table) return table.error();
     for (const auto& [set, row] : table.value())
         if (const auto* fields = row.as_table())
-            book.sweep_C[QString::fromStdString(std::string(set.str()))] = {numberIn(*fields, "from_C").value_or(0),
-                                                                            numberIn(*fields, "to_C").value_or(0)};
+            book.uses[QString::fromStdString(std::string(set.str()))] = {
+                numberIn(*fields, "from_C").value_or(0), numberIn(*fields, "to_C").value_or(0),
+                amounts(*fields, "left_out_wt"), amounts(*fields, "most_wt")};
+    for (const auto& [set, use] : book.uses)
+        if (use.from_C >= use.to_C || !use.left_out_wt.count("*"))
+            return bad("sweep.toml",
+                       "\"" + set.toStdString() + "\" lacks from_C below to_C, or left_out_wt with \"*\"");
     return Done{};
 }
 
@@ -136,6 +148,8 @@ const FamilyKind* Family::find(const QString& kind) const {
     return at == kinds.end() ? nullptr : &*at;
 }
 
+QString everyFamilyOf(const QString& data_set) { return "* " + data_set; }
+
 const Family* FamilyBook::find(const QString& name) const {
     const auto at = std::find_if(families.begin(), families.end(), [&](const Family& one) { return one.name == name; });
     return at == families.end() ? nullptr : &*at;
@@ -143,7 +157,9 @@ const Family* FamilyBook::find(const QString& name) const {
 
 ModelScatter FamilyBook::scatterOf(const QString& family, const QString& kind, const QString& phase) const {
     const QString exact = phase.isEmpty() ? kind : kind + "(" + phase + ")";
-    for (const auto& key : {std::pair{family, exact}, {family, kind}, {QString("*"), exact}, {QString("*"), kind}}) {
+    const Family* known = find(family);
+    const QString every = everyFamilyOf(known ? known->data_set : QString());
+    for (const auto& key : {std::pair{family, exact}, {family, kind}, {every, exact}, {every, kind}}) {
         const auto at = scatter.find(key);
         if (at == scatter.end()) continue;
         ModelScatter row = at->second;
@@ -161,7 +177,7 @@ double FamilyBook::laboratory_wt(const std::string& element, double content_wt) 
 
 Result<FamilyBook> loadFamilyBook() {
     FamilyBook book;
-    for (const auto read : {readFamilies, readScatter, readLaboratory, readSweeps})
+    for (const auto read : {readFamilies, readScatter, readLaboratory, readUses})
         if (auto done = read(book); !done) return std::move(done).error();
     return book;
 }

@@ -43,20 +43,30 @@ struct LaboratoryScatter {
     double floor_wt = 0, relative = 0;
 };
 
+/// What a data set serves; a table of data/sweep.toml.
+struct SetUse {
+    double from_C = 0, to_C = 0;                ///< lowest and highest temperature swept
+    std::map<std::string, double> left_out_wt;  ///< most that may stay out of the equilibrium; "*" = every other
+    std::map<std::string, double> most_wt;      ///< most that the set is meant for
+};
+
 /// The planner's own tables, read once and shared between threads.
 struct FamilyBook {
     std::vector<Family> families;
     std::map<std::pair<QString, QString>, ModelScatter>
-        scatter;                                           ///< (family or "*", "dissolved(sigma)" or "dissolved")
-    double unknown_scatter_K = 0, least_scatter_K = 0;     ///< without a row; with fewer than 5
-    std::map<std::string, LaboratoryScatter> laboratory;   ///< by element; "*" = every other
-    std::map<QString, std::pair<double, double>> sweep_C;  ///< data set -> lowest and highest temperature swept
+        scatter;  ///< (family or every one of a set, "dissolved(sigma)" or "dissolved")
+    double unknown_scatter_K = 0, least_scatter_K = 0;    ///< without a row; with fewer than 5
+    std::map<std::string, LaboratoryScatter> laboratory;  ///< by element; "*" = every other
+    std::map<QString, SetUse> uses;                       ///< by data set
 
     const Family* find(const QString& name) const;
     /// The row for this family, kind and phase, the nearest general one, or a wide scatter that says so.
     ModelScatter scatterOf(const QString& family, const QString& kind, const QString& phase) const;
     double laboratory_wt(const std::string& element, double content_wt) const;
 };
+/// The word under which model_scatter.toml keeps what holds for every family of a data set: "* ferrous".
+QString everyFamilyOf(const QString& data_set);
+
 /// Reads planner/core/data; Fault::data names the file and the entry.
 Result<FamilyBook> loadFamilyBook();
 

@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "db/content.h"
 #include "db/store.h"
 #include "planner/core/units_text.h"
 
@@ -41,11 +42,18 @@ constexpr FormRow kForms[] = {
     {u"ASTM A747", u"casting"},
     {u"ASTM A890", u"casting"},
     {u"ASTM A297", u"casting"},
+    {u"EN 573-3; AA International Designations (wrought)",
+     u"plate sheet strip bar rod wire tube extrusion profile forging ring rivet"},
+    {u"AA International Designations (wrought)",
+     u"plate sheet strip bar rod wire tube extrusion profile forging ring rivet"},
+    {u"EN 1706", u"casting"},
+    {u"AA Designations (castings); ASTM B26/B108", u"casting"},
 };
 
-/// Elements that a grade's table does not name: from `note_wt` they are mentioned, from `deliberate_wt` they cannot be
-/// a residue of the scrap and the metal is not this grade. Standards forbid unlisted additions without giving a figure
-/// (EN 10088-2 table 1, EN ISO 4957 table 1, footnotes); the figures are common practice.
+/// Where a grade's table gives no figure for the elements that it does not name: from `note_wt` they are mentioned,
+/// from `deliberate_wt` they cannot be a residue of the scrap and the metal is not this grade. Standards forbid
+/// unlisted additions without giving a figure (EN 10088-2 table 1, EN ISO 4957 table 1, footnotes); the figures are
+/// common practice.
 struct ResidueRow {
     const char* element;
     double note_wt, deliberate_wt;
@@ -139,15 +147,53 @@ void checkRules(RowCheck& check, const Analysis& analysis, const Grade& row) {
     }
 }
 
+/// Whether the row speaks of the element: a limit, a rule, or the balance.
+bool isNamed(const std::string& element, const Analysis& analysis, const Grade& row) {
+    if (row.limits.count(element) || element == row.balance()) return true;
+    return std::any_of(row.rules.begin(), row.rules.end(), [&](const QString& rule) {
+        return applyRule(rule, analysis).elements.contains(symbolOf(element));
+    });
+}
+
+/// The standard's own figure for elements that it does not name: for each, and for all of them together. A "less than"
+/// value is no proof of an excess.
+void checkOthers(RowCheck& check, const Analysis& analysis, const Grade& row) {
+    const auto most = [&](const std::string& word) {
+        const auto at = row.limits.find(word);
+        return at == row.limits.end() ? std::optional<double>() : at->second.max_wt;
+    };
+    const auto fail = [&](const QString& element, const QString& text) {
+        check.findings.push_back({element, text, sourceOf(row), true});
+        check.fails = true;
+    };
+    double total = 0;
+    QStringList names;
+    for (const auto& [element, content] : analysis) {
+        if (!content.wt || content.less_than || element == kOthersTotal ||
+            (element != kOthersEach && isNamed(element, analysis, row)))
+            continue;
+        if (const auto each = most(kOthersEach); each && *content.wt > *each + 1e-9)
+            fail(symbolOf(element),
+                 QString("%1 %2 above the maximum %3 % for each element that the grade does not name")
+                     .arg(symbolOf(element), printed(content), limitText(row.limits.at(kOthersEach).max_text, *each)));
+        if (element == kOthersEach) continue;
+        total += *content.wt;
+        names << symbolOf(element);
+    }
+    if (const auto stated = analysis.find(kOthersTotal); stated != analysis.end() && stated->second.wt)
+        total = std::max(total, *stated->second.wt);
+    if (const auto all = most(kOthersTotal); all && total > *all + 1e-9)
+        fail(names.join(", "),
+             QString("the elements that the grade does not name add up to %1 %, above the maximum %2 %")
+                 .arg(QString::number(total, 'g', 4), limitText(row.limits.at(kOthersTotal).max_text, *all)));
+}
+
 void checkResidues(RowCheck& check, const Analysis& analysis, const Grade& row) {
     for (const ResidueRow& residue : kResidues) {
         const auto at = analysis.find(residue.element);
-        if (at == analysis.end() || !at->second.wt || row.limits.count(residue.element)) continue;
-        const bool in_rule = std::any_of(row.rules.begin(), row.rules.end(), [&](const QString& rule) {
-            return applyRule(rule, analysis).elements.contains(residue.element);
-        });
+        if (at == analysis.end() || !at->second.wt || isNamed(residue.element, analysis, row)) continue;
         const double value = *at->second.wt;
-        if (in_rule || value < residue.note_wt || at->second.less_than) continue;
+        if (value < residue.note_wt || at->second.less_than) continue;
         const bool deliberate = value >= residue.deliberate_wt;
         check.fails = check.fails || deliberate;
         check.findings.push_back(
@@ -160,12 +206,23 @@ void checkResidues(RowCheck& check, const Analysis& analysis, const Grade& row) 
 
 RowCheck checkRow(const Analysis& analysis, const Grade& row) {
     RowCheck check;
+    if (const std::string base = baseMetal(analysis); !base.empty() && base != row.balance()) {
+        check.fails = true;
+        check.findings.push_back(
+            {symbolOf(base),
+             QString("the heat is an alloy of %1, the grade one of %2").arg(symbolOf(base), symbolOf(row.balance())),
+             sourceOf(row), true});
+    }
     for (const auto& [element, limit] : row.limits) {
+        if (element == kOthersEach || element == kOthersTotal) continue;
         const auto at = analysis.find(element);
         checkLimit(check, element, limit, at == analysis.end() ? nullptr : &at->second, sourceOf(row));
     }
     checkRules(check, analysis, row);
-    checkResidues(check, analysis, row);
+    if (row.limits.count(kOthersEach) || row.limits.count(kOthersTotal))
+        checkOthers(check, analysis, row);
+    else
+        checkResidues(check, analysis, row);
     std::stable_sort(check.findings.begin(), check.findings.end(),
                      [](const Finding& a, const Finding& b) { return a.fails > b.fails; });
     return check;
@@ -208,6 +265,7 @@ QStringList nearestGrades(const Heat& heat, const Grade* main, const std::vector
     std::vector<Candidate> candidates;
     const QString body = main ? main->standard.section(' ', 0, 0) : QString("EN");
     for (const Grade& row : library) {
+        if (main && row.balance() != main->balance()) continue;
         if (servesOtherForm(row, heat.product_form) || !satisfies(heat.analysis, row)) continue;
         const bool same_body = row.standard.section(' ', 0, 0) == body;
         candidates.push_back({looseness(heat.analysis, row) + (same_body ? 0 : 1000), shortName(row)});
@@ -292,6 +350,15 @@ std::vector<Finding> nearEquivalents(const Heat& heat, const Grade& main, const 
 }
 
 }  // namespace
+
+std::string baseMetal(const Analysis& analysis) {
+    constexpr double kMost_wt = 50;  // more than all others together: no alloying element reaches it
+    for (const auto& [element, content] : analysis) {
+        if (readCell(content.raw).kind == CellKind::balance) return element;
+        if (content.wt && !content.less_than && *content.wt > kMost_wt) return element;
+    }
+    return {};
+}
 
 std::vector<const Grade*> rowsOfGrade(const QString& name, const std::vector<Grade>& library) {
     const QStringList names = gradeNamesIn(name);

@@ -13,6 +13,8 @@ GradeCheck checkGrade(const Heat& heat, const std::vector<Grade>& library);
 
 /// The rows of the library whose exact names (never the near ones) hold this grade name, in the library's order.
 std::vector<const Grade*> rowsOfGrade(const QString& name, const std::vector<Grade>& library);
+/// The element that the analysis gives as the rest, or that is more than half of it; empty when it says neither.
+std::string baseMetal(const Analysis& analysis);
 /// The row that decides for this heat, or nullptr when the library does not know the grade.
 const Grade* mainRow(const Heat& heat, const std::vector<Grade>& library);
 

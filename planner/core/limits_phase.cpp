@@ -4,9 +4,12 @@
 
 #include "base/units.h"
 #include "planner/core/limit_making.h"
+#include "planner/core/units_text.h"
 
 namespace soak {
 namespace {
+
+constexpr double kLeastExcess_wt = 0.005;  // below it an excess would be printed as 0.00
 
 double amount(const State& state, const QStringList& labels) {
     double sum = 0;
@@ -45,6 +48,20 @@ const Event* eventBetween(const Sweep& sweep, const QStringList& labels, EventKi
 
 }  // namespace
 
+/// Mass per cent of the labels left where the metal begins to melt, when they go later than that; 0 otherwise.
+double excess_wt(const LimitContext& context, const QStringList& labels, const Event& last) {
+    constexpr double kJustBelow_K = 0.05;
+    const Sweep& sweep = context.report->sweep();
+    const auto melting = sweep.firstAppearing("liquid");
+    const std::size_t solid = solidStates(sweep);
+    if (!melting || solid == 0 || last.temperature_K <= melting->temperature_K) return 0;
+    const auto at_solidus = context.report->stateAt(melting->temperature_K - kJustBelow_K);
+    const State& state = at_solidus ? at_solidus.value() : sweep.states[solid - 1];
+    double sum = 0;
+    for (const QString& label : labels) sum += 100 * state.massFraction(label.toStdString());
+    return sum;
+}
+
 std::vector<Limit> dissolvedLimit(const CycleLimit& limit, const LimitContext& context) {
     const Sweep& sweep = context.report->sweep();
     const Limit floor = blankLimit(limit, Side::floor, limit.phase + " dissolved");
@@ -58,6 +75,10 @@ std::vector<Limit> dissolvedLimit(const CycleLimit& limit, const LimitContext& c
         if (event && (!last || event->temperature_K > last->temperature_K)) last = event;
     }
     if (!last) return {notBinding(floor, limit.phase + " is never stable in this heat")};
+    if (const double excess = excess_wt(context, labelsOf(limit.phase), *last); excess > kLeastExcess_wt)
+        return {
+            impossible(floor, QString("it cannot be dissolved at any temperature: excess %1 %2 where melting begins")
+                                  .arg(limit.phase, withUnit(excess, "%", 2)))};
     return {limitAt(floor, *last, context)};
 }
 

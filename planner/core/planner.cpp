@@ -6,6 +6,7 @@
 
 #include "base/folders.h"
 #include "planner/core/band.h"
+#include "planner/core/coverage.h"
 #include "planner/core/grade_check.h"
 #include "planner/core/limits.h"
 #include "planner/core/units_text.h"
@@ -168,9 +169,10 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
     context.reference_C = job.cycle.setpoint_C;
     const bool needs_physics =
         std::any_of(limits.begin(), limits.end(), [](const CycleLimit& one) { return isComputedKind(one.kind); });
-    if (needs_physics && context.missing.isEmpty()) {
-        const auto [from_C, to_C] = shelf.book.sweep_C.at(family.data_set);
-        auto report = cache.of(data, chemistry, family.phases, from_C, to_C);
+    const SetUse& use = shelf.book.uses.at(family.data_set);
+    context.report_missing = whyNotCovered(job.heat.analysis, known, use);
+    if (needs_physics && context.missing.isEmpty() && context.report_missing.isEmpty()) {
+        auto report = cache.of(data, chemistry, family.phases, use.from_C, use.to_C);
         if (report)
             context.report = report.value();
         else
@@ -246,7 +248,7 @@ Result<Shelf> makeShelf(std::vector<Grade> grades, std::vector<PublishedTreatmen
     Shelf shelf{{}, std::move(grades), std::move(published), std::move(book).value(), std::move(rules)};
     for (const Family& family : shelf.book.families) {
         if (shelf.data_sets.count(family.data_set)) continue;
-        if (!shelf.book.sweep_C.count(family.data_set))
+        if (!shelf.book.uses.count(family.data_set))
             return Error{
                 Fault::data,
                 "planner/core/data/sweep.toml has no row for the data set \"" + family.data_set.toStdString() + "\"",

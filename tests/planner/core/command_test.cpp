@@ -73,6 +73,30 @@ TEST_CASE("state: the documented fields, amounts that add up") {
     CHECK(volume == Approx(1).margin(1e-9));
 }
 
+TEST_CASE("the balance element chooses the data set, which every answer names with its version") {
+    const auto setOf = [](const QStringList& arguments) {
+        const Run run = soakwright(arguments + QStringList{"--json"});
+        INFO(run.err.toStdString());
+        REQUIRE(run.status == 0);
+        CHECK(run.json()["data_version"].get<std::string>().size() == 12);
+        return run.json()["data_set"].get<std::string>();
+    };
+    CHECK(setOf({"state", "--wt", "C=0.4,Cr=1", "--at", "850"}) == "ferrous");
+    CHECK(setOf({"state", "--wt", "Cu=4.4,Mg=1.5,Al=bal", "--at", "495"}) == "light");
+    CHECK(setOf({"state", "--wt", "Al=94.1,Cu=4.4,Mg=1.5", "--at", "495"}) == "light");  // more than half is the base
+    CHECK(setOf({"state", "--wt", "Cu=4.4,Mg=1.5", "--set", "light", "--at", "495"}) == "light");
+    CHECK(setOf({"sweep", "--wt", "Mg=0.7,Si=0.4,Al=bal", "--from", "450", "--to", "560"}) == "light");
+    CHECK(setOf({"window", "--wt", "Mg=0.7,Si=0.4,Fe=0.2,Al=bal", "--family", "light-wrought-6xxx"}) == "light");
+    const Run nickel = soakwright({"state", "--wt", "Cr=20,Ni=bal", "--at", "900"});
+    CHECK(nickel.status == 2);
+    CHECK(nickel.err.contains("no data set for alloys of Ni"));
+    const Run tin = soakwright(
+        {"window", "--wt", "Sn=6.2,Cu=1,Mg=0.1,Si=0.4,Fe=0.4,Al=bal", "--family", "light-cast-AlCu", "--json"});
+    REQUIRE(tin.status == 0);
+    CHECK(tin.json()["verdict"] == "not computed");
+    CHECK_THAT(tin.json()["reason"].get<std::string>(), Catch::Contains("Sn 6.2 % is not in the data set"));
+}
+
 TEST_CASE("lists take commas or semicolons, decimal commas between semicolons, and a written balance") {
     const double plain =
         soakwright({"state", "--wt", "C=0.05,Cr=18,Ni=10", "--at", "1050", "--json"}).json()["gibbs_J_per_mol"];
