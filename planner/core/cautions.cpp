@@ -2,6 +2,7 @@
 #include "planner/core/cautions.h"
 
 #include <algorithm>
+#include <tuple>
 
 namespace soak {
 namespace {
@@ -73,6 +74,13 @@ bool speaksOfGrade(const Caution& caution, const Cycle& cycle) {
     });
 }
 
+/// Whether the caution belongs to one family of metals rather than to any that meets the medium.
+bool speaksOfMetal(const Caution& caution) {
+    return caution.applies_to.startsWith("alloy: ") ||
+           std::any_of(std::begin(kSubjects), std::end(kSubjects),
+                       [&](const SubjectRow& row) { return *row.family && caution.applies_to == row.applies_to; });
+}
+
 int rankOf(const QString& severity) { return severity == "danger" ? 0 : severity == "warning" ? 1 : 2; }
 
 }  // namespace
@@ -86,9 +94,14 @@ std::vector<Caution> cautionsFor(const std::vector<Caution>& all, const Cycle& c
         if (subjects.contains(caution.applies_to) || speaksOfGrade(caution, cycle)) special.push_back(caution);
         if (caution.applies_to == "treatment: any") general.push_back(caution);
     }
-    // Of equal danger the shorter line comes first: it is the one that is read.
+    // Of equal danger what speaks of this very metal comes first, in the table's order: the worst stands on top there.
+    // Of the others the shorter line comes first: it is the one that is read.
     const auto worse = [](const Caution& a, const Caution& b) {
-        return std::pair(rankOf(a.severity), a.text.size()) < std::pair(rankOf(b.severity), b.text.size());
+        const auto key = [](const Caution& one) {
+            const bool of_metal = speaksOfMetal(one);
+            return std::tuple(rankOf(one.severity), !of_metal, of_metal ? 0 : one.text.size());
+        };
+        return key(a) < key(b);
     };
     std::stable_sort(special.begin(), special.end(), worse);
     // The table's own order holds for the general ones: over-temperature protection stands first.

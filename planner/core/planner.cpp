@@ -39,6 +39,7 @@ Chemistry chemistryOf(const Analysis& analysis, const DataSetFacts& facts) {
 void sayWhatIsLeftOut(WindowAnswer& answer, const Analysis& analysis, const DataSetFacts& facts) {
     for (const auto& [element, content] : analysis) {
         const QString symbol = QString::fromStdString(element);
+        if (element == kOthersEach || element == kOthersTotal) continue;  // sums of what is listed one by one
         if (content.wt && !knows(facts, element))
             answer.left_out << symbol + " " + (content.raw.isEmpty() ? QString::number(*content.wt) : content.raw);
         if (!content.wt && !content.raw.trimmed().isEmpty() && knows(facts, element))

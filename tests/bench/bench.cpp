@@ -76,8 +76,26 @@ const std::vector<Steel>& steels() {
     return list;
 }
 
-std::shared_ptr<const DataSet> load() {
-    auto data = loadDataSet(productPath("thermo/data/ferrous"));
+/// Aluminium, for the same states, sweeps and windows on another set.
+const std::vector<Steel>& lightAlloys() {
+    static const std::vector<Steel> list = {
+        {"2024",
+         {{"Cu", 4.4}, {"Mg", 1.5}, {"Mn", 0.6}, {"Fe", 0.2}, {"Si", 0.1}, {"Cr", 0.02}, {"Zn", 0.1}, {"Ti", 0.03}}},
+        {"7050",
+         {{"Zn", 6.2}, {"Mg", 2.25}, {"Cu", 2.3}, {"Zr", 0.11}, {"Fe", 0.1}, {"Si", 0.06}, {"Mn", 0.03}, {"Ti", 0.02}}},
+        {"casting",
+         {{"Si", 6.5}, {"Cu", 3.5}, {"Mg", 0.3}, {"Fe", 0.5}, {"Mn", 0.3}, {"Zn", 0.3}, {"Ti", 0.1}, {"Ni", 0.05}}}};
+    return list;
+}
+
+/// From below the treatments to above the melt.
+struct Reach {
+    double states_from_C, states_to_C, sweep_from_C, sweep_to_C;
+};
+constexpr Reach kSteel{600, 1500, 500, 1530}, kLight{250, 640, 150, 690};
+
+std::shared_ptr<const DataSet> load(const char* set = "ferrous") {
+    auto data = loadDataSet(productPath("thermo/data") / set);
     if (!data) {
         std::fprintf(stderr, "%s\n", data.error().text().c_str());
         std::exit(2);
@@ -94,26 +112,28 @@ T must(Result<T> result) {
     return std::move(result).value();
 }
 
-/// Elements and amounts of an iron alloy, and a solver for it: all phases on but those that the set leaves out.
+/// Elements and amounts of an alloy, and a solver for it: all phases on but those that the set leaves out.
 struct Task {
     std::vector<int> elements;
     Eigen::VectorXd b;
     std::shared_ptr<const System> system;
     std::vector<char> allowed;
+    Reach reach = kSteel;
     Solver solver() const { return Solver(system, b, allowed); }
 };
 
-Task taskOf(const DataSet& data, const Contents& wt) {
+Task taskOf(const DataSet& data, const Contents& wt, const Reach& reach = kSteel) {
     Task task;
+    task.reach = reach;
     std::vector<double> moles;
     double rest = 100;
     for (const auto& [element, content] : wt) rest -= content;
     for (size_t e = 0; e < data.elements.size(); ++e) {
         const ElementData& element = data.elements[e];
         const auto found = wt.find(element.symbol);
-        if (found == wt.end() && element.symbol != "Fe") continue;
+        if (found == wt.end() && element.symbol != data.facts.balance) continue;
         task.elements.push_back(static_cast<int>(e));
-        moles.push_back((element.symbol == "Fe" ? rest : found->second) / element.mass);
+        moles.push_back((element.symbol == data.facts.balance ? rest : found->second) / element.mass);
     }
     task.b = Eigen::Map<Eigen::VectorXd>(moles.data(), static_cast<Eigen::Index>(moles.size()));
     task.b /= task.b.sum();
@@ -131,7 +151,7 @@ std::vector<double> temperatures(double from_C, double to_C, double step) {
 
 /// Seconds per state from nothing, mean over the treatment range.
 double coldSeconds(const Task& task, int repeats) {
-    const auto list = temperatures(600, 1500, 60);
+    const auto list = temperatures(task.reach.states_from_C, task.reach.states_to_C, 60);
     Solver solver = task.solver();
     return leastOf(repeats,
                    [&] {
@@ -142,11 +162,11 @@ double coldSeconds(const Task& task, int repeats) {
 
 /// Seconds per state from its neighbour 5 K below, mean over the treatment range.
 double warmSeconds(const Task& task, int repeats) {
-    const auto list = temperatures(605, 1500, 5);
+    const auto list = temperatures(task.reach.states_from_C + 5, task.reach.states_to_C, 5);
     Solver solver = task.solver();
     return leastOf(repeats,
                    [&] {
-                       must(solver.solveCold(kelvin(600)));
+                       must(solver.solveCold(kelvin(task.reach.states_from_C)));
                        const Point first = solver.point();
                        solver.startFrom(first);
                        for (double T : list) must(solver.solve(T));
@@ -180,28 +200,29 @@ double bareSeconds(const Task& task, int repeats) {
            kRounds;
 }
 
-double sweepSeconds(const std::shared_ptr<const DataSet>& data, const Contents& wt, int repeats) {
+double sweepSeconds(const std::shared_ptr<const DataSet>& data, const Contents& wt, const Reach& reach, int repeats) {
     return leastOf(repeats, [&] {
-        Alloy alloy = must(Alloy::make(data, {wt, "Fe"}));
-        must(alloy.sweep(kelvin(500), kelvin(1530)));
+        Alloy alloy = must(Alloy::make(data, {wt, facts(*data).balance}));
+        must(alloy.sweep(kelvin(reach.sweep_from_C), kelvin(reach.sweep_to_C)));
     });
 }
 
-/// A whole window: the sweep from 500 °C to the liquidus with every event and its slopes, and the limits that ask for
-/// an amount or a content.
-double windowSeconds(const std::shared_ptr<const DataSet>& data, const Contents& wt, int repeats) {
+/// A whole window: the sweep from below the treatments to the liquidus with every event and its slopes, and the limits
+/// that ask for an amount or a content.
+double windowSeconds(const std::shared_ptr<const DataSet>& data, const Contents& wt, const Reach& reach, int repeats) {
+    const std::string element = wt.count("C") ? "C" : "Mg";  // what hardens
     return leastOf(repeats, [&] {
-        Alloy alloy = must(Alloy::make(data, {wt, "Fe"}));
-        const Sweep sweep = must(alloy.sweep(kelvin(500), kelvin(1530)));
-        // The amount of the first state's largest matrix phase half-way, and the carbon of the matrix half-way.
+        Alloy alloy = must(Alloy::make(data, {wt, facts(*data).balance}));
+        const Sweep sweep = must(alloy.sweep(kelvin(reach.sweep_from_C), kelvin(reach.sweep_to_C)));
+        // The amount of the first state's largest matrix phase half-way, and the element of the matrix half-way.
         const State &low = sweep.states[sweep.states.size() / 3], &high = sweep.states[sweep.states.size() / 2];
         const std::string& label = low.phases.front().label;
         const double a = low.volumeFraction(label), b = high.volumeFraction(label);
         if (std::abs(a - b) > 1e-3)
             must(alloy.temperatureOfFraction(label, (a + b) / 2, low.temperature_K, high.temperature_K));
-        const auto c = low.matrixContent("C"), d = high.matrixContent("C");
+        const auto c = low.matrixContent(element), d = high.matrixContent(element);
         if (c && d && std::abs(*c - *d) > 1e-6)
-            must(alloy.temperatureOfMatrixContent("C", (*c + *d) / 2, low.temperature_K, high.temperature_K));
+            must(alloy.temperatureOfMatrixContent(element, (*c + *d) / 2, low.temperature_K, high.temperature_K));
     });
 }
 
@@ -309,15 +330,16 @@ void rivalTable(const DataSet& data, int repeats) {
                 std::pow(cold, 1.0 / count), std::pow(warm, 1.0 / count), arrived, count);
 }
 
-void stateTable(const std::shared_ptr<const DataSet>& data, int repeats) {
-    std::printf("\nprocessor time, proof included, ms\n%-10s %8s %8s %8s %8s %10s %10s\n", "steel", "cold", "warm",
-                "sweep", "window", "bare ms", "warm/bare");
-    for (const Steel& steel : steels()) {
-        const Task task = taskOf(*data, steel.wt);
+void stateTable(const std::shared_ptr<const DataSet>& data, const std::vector<Steel>& alloys, const Reach& reach,
+                int repeats) {
+    std::printf("\nprocessor time, proof included, ms\n%-10s %8s %8s %8s %8s %10s %10s\n", facts(*data).name.c_str(),
+                "cold", "warm", "sweep", "window", "bare ms", "warm/bare");
+    for (const Steel& steel : alloys) {
+        const Task task = taskOf(*data, steel.wt, reach);
         const double warm = warmSeconds(task, repeats), bare = bareSeconds(task, repeats);
         std::printf("%-10s %8.3f %8.4f %8.2f %8.2f %10.4f %10.1f\n", steel.name, 1e3 * coldSeconds(task, repeats),
-                    1e3 * warm, 1e3 * sweepSeconds(data, steel.wt, repeats),
-                    1e3 * windowSeconds(data, steel.wt, repeats), 1e3 * bare, warm / bare);
+                    1e3 * warm, 1e3 * sweepSeconds(data, steel.wt, reach, repeats),
+                    1e3 * windowSeconds(data, steel.wt, reach, repeats), 1e3 * bare, warm / bare);
     }
 }
 
@@ -402,7 +424,7 @@ int only(const std::string& what, const std::string& name) {
         if (what == "first") must(task.solver().solveCold(kelvin(600)));  // where the warm states set off
         if (what == "cold") coldSeconds(task, 1);
         if (what == "warm") warmSeconds(task, 1);
-        if (what == "sweep") sweepSeconds(data, steel.wt, 1);
+        if (what == "sweep") sweepSeconds(data, steel.wt, kSteel, 1);
         return 0;
     }
     return 2;
@@ -451,7 +473,8 @@ int main(int argc, char** argv) {
     memory();
     startUp(repeats);
     const auto data = load();
-    stateTable(data, repeats);
+    stateTable(data, steels(), kSteel, repeats);
+    stateTable(load("light"), lightAlloys(), kLight, repeats);
     rivalTable(*data, repeats);
     growthTable(*data, repeats);
     threadTable(data);

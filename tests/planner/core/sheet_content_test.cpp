@@ -102,6 +102,29 @@ TEST_CASE("cautions follow medium, furnace and treatment, dangers first, and sta
     CHECK_FALSE(oil);
 }
 
+TEST_CASE("cautions for aluminium: its own dangers first, magnesium before all others at the nitrate bath") {
+    const std::vector<Caution> all = readCautions(libraryFolder()).value();
+    Cycle solution;
+    solution.kind = "solution-anneal";
+    solution.grades = {"2011"};
+    Furnace salt, air;
+    salt.kind = "nitrate salt bath, electric";
+    air.kind = "drop bottom, fan, electric";
+    const auto at_salt = cautionsFor(all, solution, "light-wrought-2xxx", salt, "LW3, water", 500, 20);
+    CHECK(at_salt.front().row_id == "c083");  // magnesium never goes into nitrate
+    const auto in_air = cautionsFor(all, solution, "light-wrought-2xxx", air, "LW1, water", 500, 20);
+    QStringList ids;
+    for (const Caution& caution : in_air) ids << caution.row_id;
+    CHECK_FALSE(ids.contains("c083"));
+    for (const char* wanted : {"c089", "c090", "c095", "c098", "c101", "c110"}) {  // c110: leaded alloys, by grade
+        INFO(wanted);
+        CHECK(ids.contains(wanted));
+    }
+    CHECK_FALSE(ids.contains("c106"));  // castings only
+    for (const Caution& caution : cautionsFor(all, solution, "austenitic", air, "W2, water", 1060, 20))
+        CHECK_FALSE(caution.applies_to.contains("aluminium"));
+}
+
 TEST_CASE("a sheet's JSON changes with its contents") {
     const SheetContent sheet = makeSheet(request());
     SheetContent other = sheet;

@@ -76,16 +76,53 @@ const char* nameOf(Place place) {
 }
 
 Source makeSource(std::shared_ptr<const DataSet> data, std::vector<Grade> grades) {
-    // For a set without an entry here: half of the alloy. Carbon and nitrogen as far as a steel's melt could hold them.
-    const std::map<std::string, double> known = {{"Al", 15}, {"C", 6},   {"Co", 20}, {"Cr", 35}, {"Cu", 10},
-                                                 {"Mn", 30}, {"Mo", 20}, {"N", 1},   {"Nb", 8},  {"Ni", 40},
-                                                 {"Si", 8},  {"Ti", 8},  {"V", 12},  {"W", 20}};
+    struct Reach {
+        double coldest_C, hottest_C;
+        std::map<std::string, double> most;
+    };
+    // By balance element. Carbon and nitrogen as far as a steel's melt could hold them; a set or an element without an
+    // entry: half of the alloy.
+    const std::map<std::string, Reach> known = {{"Fe",
+                                                 {400,
+                                                  1600,
+                                                  {{"Al", 15},
+                                                   {"C", 6},
+                                                   {"Co", 20},
+                                                   {"Cr", 35},
+                                                   {"Cu", 10},
+                                                   {"Mn", 30},
+                                                   {"Mo", 20},
+                                                   {"N", 1},
+                                                   {"Nb", 8},
+                                                   {"Ni", 40},
+                                                   {"Si", 8},
+                                                   {"Ti", 8},
+                                                   {"V", 12},
+                                                   {"W", 20}}}},
+                                                {"Al",
+                                                 {100,
+                                                  900,
+                                                  {{"Cu", 50},
+                                                   {"Mg", 35},
+                                                   {"Si", 26},
+                                                   {"Zn", 60},
+                                                   {"Fe", 5},
+                                                   {"Mn", 5},
+                                                   {"Cr", 3},
+                                                   {"Ti", 2},
+                                                   {"Zr", 1},
+                                                   {"Ni", 10}}}}};
     Source source{std::move(data), std::move(grades), {}};
+    const auto reach = known.find(source.data->facts.balance);
+    source.coldest = 273.15 + (reach == known.end() ? 400 : reach->second.coldest_C);
+    source.hottest = 273.15 + (reach == known.end() ? 1600 : reach->second.hottest_C);
     for (const ElementData& element : source.data->elements) {
         if (element.symbol == source.data->facts.balance) continue;
-        const auto found = known.find(element.symbol);
-        source.outside[element.symbol] =
-            found == known.end() || source.data->facts.balance != "Fe" ? 50 : found->second;
+        double most = 50;
+        if (reach != known.end())
+            if (const auto own = reach->second.most.find(element.symbol); own != reach->second.most.end())
+                most = own->second;
+        source.outside[element.symbol] = most;
     }
     return source;
 }
@@ -129,7 +166,7 @@ Case draw(const Source& source, Random& random) {
             break;
     }
     leaveRoom(c, c.kind == Kind::outside ? uniform(random, 1e-6, 30) : 1e-3);
-    c.T = uniform(random, 673.15, 1873.15);  // 400 to 1600 °C
+    c.T = uniform(random, source.coldest, source.hottest);
     c.place = chance(random, 0.7) ? Place::anywhere : static_cast<Place>(1 + random() % (kPlaces - 1));
     c.graphite = chance(random, 0.4);
     return c;

@@ -40,7 +40,8 @@ struct Source {
     std::shared_ptr<const DataSet> data;
     std::vector<Grade> grades;
     std::map<std::string, double> outside;
-    bool libraryOnly = false;  ///< only chemistries inside the library's grades and at their corners
+    double coldest = 0, hottest = 0;  ///< K; temperatures drawn, from below the treatments to above the melt
+    bool libraryOnly = false;         ///< only chemistries inside the library's grades and at their corners
 };
 Source makeSource(std::shared_ptr<const DataSet> data, std::vector<Grade> grades);
 

@@ -3,6 +3,7 @@
 
 #include <charconv>
 #include <fstream>
+#include <set>
 
 namespace soak::campaign {
 namespace {
@@ -41,6 +42,7 @@ std::vector<Grade> readGrades(const std::filesystem::path& csv) {
         Grade grade;
         grade.id = cells[0];
         for (size_t c = 0; c < std::min(cells.size(), head.size()); ++c) {
+            if (head[c] == "balance") grade.balance = cells[c];
             const auto cut = head[c].rfind('_');
             const auto value = numberIn(cells[c]);
             if (cut == std::string::npos || !value) continue;
@@ -49,6 +51,17 @@ std::vector<Grade> readGrades(const std::filesystem::path& csv) {
         }
         if (!grade.limits.empty()) grades.push_back(std::move(grade));
     }
+    return grades;
+}
+
+std::vector<Grade> readGradesOf(const std::filesystem::path& folder, const std::string& balance) {
+    std::set<std::filesystem::path> tables;  // in a fixed order: the same seed draws the same cases everywhere
+    for (const auto& entry : std::filesystem::directory_iterator(folder))
+        if (entry.path().filename().string().rfind("grades", 0) == 0) tables.insert(entry.path());
+    std::vector<Grade> grades;
+    for (const auto& table : tables)
+        for (Grade& grade : readGrades(table))
+            if (grade.balance == balance) grades.push_back(std::move(grade));
     return grades;
 }
 

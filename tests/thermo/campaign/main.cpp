@@ -3,6 +3,7 @@
 // means: mass balance, phase rule, a search of every phase from random starts, and other starts of the solver itself.
 //
 //   campaign --library --count 2000 --threads 2              the grade library alone: part of the test run
+//   campaign --set light --library --count 1000              the same for another set and its grades
 //   campaign --count 100000 --threads 2 --seed 1             the long form, gas left out
 //   campaign --count 100000 --threads 2 --seed 1 --gas       the long form, gas let in
 //   campaign --seed 1 --case 4711                            repeats one case
@@ -117,9 +118,9 @@ int work(const Request& request) {
         std::fprintf(stderr, "%s\n", data.error().text().c_str());
         return 2;
     }
-    auto grades = readGrades(productPath("db/library/grades.csv"));
+    auto grades = readGradesOf(productPath("db/library"), facts(*data.value()).balance);
     if (grades.empty()) {
-        std::fprintf(stderr, "the grade library cannot be read\n");
+        std::fprintf(stderr, "the grade library has no grade for this set, or cannot be read\n");
         return 2;
     }
     Source source = makeSource(data.value(), std::move(grades));
