@@ -1,52 +1,16 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 #include <Eigen/Dense>
-#include <array>
 #include <memory>
 #include <vector>
 
 #include "base/result.h"
 #include "hull.h"
+#include "newton.h"
+#include "point.h"
 #include "system.h"
 
 namespace soak {
-
-/// One composition set of one phase.
-struct PhaseSet {
-    int phase = 0;                              ///< index into System::phases
-    double n = 0;                               ///< mole of formula units per mole of atoms of the alloy
-    double atoms = 0;                           ///< mole of atoms per formula unit
-    double gibbs = 0;                           ///< J per mole of formula unit
-    std::array<double, PhaseModel::kMost> y{};  ///< site fractions
-    bool unstable = false;                      ///< its curvature is not positive: it wants to split
-};
-
-/// A local minimum of one phase's distance to the tangent plane.
-struct Minimum {
-    PhaseSet set;       ///< n unused
-    double height = 0;  ///< G - mu a, J per mole of formula unit; negative = the phase wants to form
-};
-
-/// One solved state. What stands below `proof` speeds up the next state near it; it carries no part of the answer.
-struct Point {
-    double T = 0;
-    std::vector<PhaseSet> sets;
-    Eigen::VectorXd mu;           ///< J per mole of atoms, in the system's order of elements
-    double gibbs = 0;             ///< J per mole of atoms
-    double proof = 0;             ///< largest driving force left, J per mole of atoms
-    std::vector<Minimum> minima;  ///< of phases and sets that are not stable
-    std::vector<double> lowest;   ///< per phase: lower bound of its height, J per mole of formula unit
-    /// Per class of samples (System::Samples::kind, all phases end to end): the height of its best sample when a search
-    /// from it last ended in a place that was known already.
-    std::vector<double> settled;
-    std::vector<PhaseSet> anchors;  ///< where the known places of each phase lay when its classes were last all open
-    Eigen::VectorXd sampleHeight;   ///< heights of the samples at this state
-};
-
-/// What takes the place of a given temperature: sum over sets of n (q . a) = 0, q one weight per element and set.
-struct Condition {
-    std::vector<Eigen::VectorXd> weight;  ///< per set; empty vectors count as zero
-};
 
 /// Finds the global minimum of G at T, 1 atm and overall composition. One per thread.
 ///   1. Start: warm from the last point, or cold: lower hull over samples of every phase by linear programming.
@@ -79,16 +43,19 @@ public:
     double prove(Point& point, bool thorough);
 
     struct Counters {
-        long states = 0, cold = 0, newton = 0, descents = 0, descentSteps = 0, hulls = 0, fallbacks = 0;
+        long states = 0, cold = 0, newton = 0, descents = 0, descentSteps = 0, hulls = 0, fallbacks = 0, settled = 0;
     };
     Counters counters;
 
 private:
-    struct Local;
-    void localize(const PhaseModel& model, const double* y, double T, Local& local, bool withSlope) const;
     bool refine(Point& p, const Condition* condition, Eigen::VectorXd* dT_db);
+    bool settle(Point& p);
+    bool removeTwins(Point& p) const;
+    void total(Point& p);
     void descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std::vector<Minimum>& known,
                  const std::vector<PhaseSet>& sets);
+    bool leadsToKnown(const Minimum& m, const double* y, const std::vector<Minimum>& known,
+                      const std::vector<PhaseSet>& sets) const;
     bool stands(const Point& p) const;
     bool converge(Point& p, bool thorough);
     bool exchange(Point& p, const std::vector<Minimum>& entering);
@@ -100,13 +67,22 @@ private:
     bool solveHull(Hull& hull, const std::vector<PhaseSet>& extra, bool withSamples);
     void complete(PhaseSet& set, double T) const;
     std::vector<Minimum> violators(const Point& p) const;
+    double heldBound(const Point& p, size_t phase) const;
+    bool consider(Minimum m, const Point& p, std::vector<Minimum>& mine, double& low, bool toTheEnd = false);
+    std::vector<std::pair<double, int>> startsOf(Point& p, size_t phase, bool thorough);
+    static double softness(const PhaseModel& model, const Curvature& local, double T, double* v);
+    void searchAround(const PhaseSet& set, const Point& p, std::vector<Minimum>& mine, double& low);
+    void reopen(Point& p, size_t phase, const std::vector<Minimum>& mine) const;
+    double searchPhase(Point& p, size_t phase, bool thorough, std::vector<Minimum>& found);
     bool hasMoved(const Point& p, int phase, const std::vector<Minimum>& found) const;
 
     std::shared_ptr<const System> system_;
     Eigen::VectorXd b_;
     std::vector<char> allowed_;
     Point point_;
+    NewtonStep step_;
     Eigen::VectorXd at_, slope_, sampleG_, height_;
+    std::vector<int> bestAt_;  ///< best sample of each class of the phase at hand
     double atT_ = 0, sampleT_ = 0;
     void setTemperature(double T);
     const Eigen::VectorXd& samplesAt(double T);

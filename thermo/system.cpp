@@ -8,6 +8,7 @@
 #include <set>
 
 #include "base/units.h"
+#include "curvature.h"
 #include "data_set.h"
 
 namespace soak {
@@ -15,6 +16,9 @@ namespace {
 
 /// A default end-member stands this far above its elements, J per mole of atoms: never stable by accident.
 constexpr double kDefaultEndMember = 10000;
+
+constexpr double kNodeStep = 50;  // K between the nodes at which the shape of a phase is looked at
+constexpr size_t kNodes = 130;    // from 0 K
 
 int localElement(const std::vector<int>& elements, int index) {
     const auto found = std::lower_bound(elements.begin(), elements.end(), index);
@@ -126,7 +130,7 @@ bool addTerm(const Parameter& p, const PhaseModel& model, int row, Polynomial& p
 }  // namespace
 
 void System::compilePhases(const DataSet& data, std::vector<std::vector<const Function*>>& rows,
-                           std::vector<Function>& made) {
+                           std::deque<Function>& made) {
     for (size_t index = 0; index < data.phases.size(); ++index) {
         PhaseModel model = shapeOf(data, static_cast<int>(index), elements_);
         if (model.size == 0) continue;
@@ -180,10 +184,8 @@ void System::compilePhases(const DataSet& data, std::vector<std::vector<const Fu
 
 System::System(const DataSet& data, const std::vector<int>& elements) : elements_(elements) {
     std::vector<std::vector<const Function*>> rows;
-    std::vector<Function> made;
-    made.reserve(4096);  // pointers into it must stay
+    std::deque<Function> made;  // pointers into it stay
     compilePhases(data, rows, made);
-    assert(made.size() < 4096);
     std::set<double> breaks{0};
     for (const auto& functions : rows)
         for (const Function* f : functions)
@@ -202,6 +204,7 @@ System::System(const DataSet& data, const std::vector<int>& elements) : elements
         sampleRanges_.push_back(std::make_unique<SampleRange>());
     }
     makeSamples();
+    shapes_ = std::vector<std::atomic<Shape>>(phases_.size() * kNodes);
 }
 
 size_t System::rangeOf(double T) const {
@@ -220,6 +223,7 @@ void System::slopesAt(double T, Eigen::VectorXd& at) const {
 
 void System::makeSamples() {
     constexpr double kSoft = 0.03;  // what the other constituents share at a corner
+    constexpr int kFew = 4;         // constituents of a sublattice on which every pair that shares it has its own class
     constexpr int kRandom = 40;     // random points of each phase with freedom on it
     std::mt19937_64 random(20250402);
     std::exponential_distribution<double> exponential(1.0);
@@ -231,20 +235,18 @@ void System::makeSamples() {
         int kinds = 1;
         for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s)
             kinds *= model.start[s + 1] - model.start[s];
-        samples_.firstKind.push_back(samples_.firstKind.back() + 2 * kinds);
         // Mixed points have classes of their own: a search must start from every corner, even where a mixture lies
         // lower.
-        bool mixed = false;
-        const auto add = [&](const std::vector<double>& y) {
+        const auto add = [&](const std::vector<double>& y, int kind) {
             samples_.phase.push_back(static_cast<int>(p));
-            samples_.kind.push_back(kindOf(model, y.data()) + (mixed ? kinds : 0));
+            samples_.kind.push_back(kind);
             samples_.offset.push_back(static_cast<int>(samples_.y.size()));
             samples_.y.insert(samples_.y.end(), y.begin(), y.end());
         };
         // Corners: every combination of one main constituent per sublattice; then the same with two sharing the largest
         // one.
         const auto corners = [&](auto&& self, size_t s, std::vector<double> y) -> void {
-            if (s == static_cast<size_t>(model.sublattices)) return add(y);
+            if (s == static_cast<size_t>(model.sublattices)) return add(y, kindOf(model, y.data()));
             const int first = model.start[s], last = model.start[s + 1], n = last - first;
             for (int main = first; main < last; ++main) {
                 for (int c = first; c < last; ++c)
@@ -253,8 +255,10 @@ void System::makeSamples() {
             }
         };
         corners(corners, 0, std::vector<double>(static_cast<size_t>(model.size)));
+        samples_.firstKind.push_back(samples_.firstKind.back() + kinds);
         if (kinds == 1) continue;
-        mixed = true;
+        int& ownKinds = samples_.firstKind.back();
+        int next = 2 * kinds;
         const int corner0 = samples_.first.back(), cornerEnd = samples_.count();
         for (size_t s = 0; s < static_cast<size_t>(model.sublattices); ++s) {
             const int first = model.start[s], last = model.start[s + 1];
@@ -266,7 +270,8 @@ void System::makeSamples() {
                     std::vector<double> half = y;
                     const double shared = (half[static_cast<size_t>(main)] + half[static_cast<size_t>(other)]) / 2;
                     half[static_cast<size_t>(main)] = half[static_cast<size_t>(other)] = shared;
-                    if (cornerEnd - corner0 <= 60) add(half);
+                    if (cornerEnd - corner0 <= 60)
+                        add(half, last - first <= kFew ? next++ : kinds + kindOf(model, half.data()));
                 }
             }
         }
@@ -280,8 +285,9 @@ void System::makeSamples() {
                 }
                 for (int c = model.start[s]; c < model.start[s + 1]; ++c) y[static_cast<size_t>(c)] /= sum;
             }
-            add(y);
+            add(y, kinds + kindOf(model, y.data()));
         }
+        ownKinds += next - kinds;
     }
     samples_.first.push_back(samples_.count());
 
@@ -326,6 +332,26 @@ void System::sampleGibbs(double T, Eigen::VectorXd& G) const {
             G[k] += magneticGibbs(T, samples_.Tc[i], samples_.beta[i],
                                   phases_[static_cast<size_t>(samples_.phase[i])].structureFactor)
                         .G;
+}
+
+System::Shape System::shapeAt(size_t phase, size_t node) const {
+    std::atomic<Shape>& kept = shapes_[phase * kNodes + node];
+    Shape shape = kept.load(std::memory_order_relaxed);
+    if (shape != Shape::unknown) return shape;
+    const double T = std::max(kNodeStep * static_cast<double>(node), 1.0);
+    Eigen::VectorXd at;
+    parametersAt(T, at);
+    shape = Shape::convex;
+    // From the last sample back: those of mixed compositions, where ridges are, come last.
+    for (int k = samples_.first[phase + 1]; k-- > samples_.first[phase] && shape == Shape::convex;)
+        if (!soak::isConvex(phases_[phase], at.data(), T, samples_.site(k), elementCount())) shape = Shape::ridged;
+    kept.store(shape, std::memory_order_relaxed);
+    return shape;
+}
+
+bool System::isConvex(size_t phase, double T) const {
+    const auto node = static_cast<size_t>(std::max(T, 0.0) / kNodeStep);
+    return node + 1 < kNodes && shapeAt(phase, node) == Shape::convex && shapeAt(phase, node + 1) == Shape::convex;
 }
 
 }  // namespace soak

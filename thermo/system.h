@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
 #include <Eigen/Dense>
+#include <atomic>
+#include <deque>
 #include <memory>
 #include <mutex>
 #include <vector>
@@ -49,6 +51,9 @@ public:
     const Samples& samples() const { return samples_; }
     /// G of every sample at T, J per mole of formula unit.
     void sampleGibbs(double T, Eigen::VectorXd& G) const;
+    /// True when G of the phase is convex at all of its samples at the nodes of a grid on either side of T. Such a
+    /// phase has one minimum above any plane. It holds for every composition, so it is found once and kept.
+    bool isConvex(size_t phase, double T) const;
 
 private:
     using Coefficients = Eigen::Matrix<double, Eigen::Dynamic, kPowers>;
@@ -57,7 +62,7 @@ private:
         Coefficients coefficients;
     };
     void compilePhases(const DataSet& data, std::vector<std::vector<const Function*>>& rows,
-                       std::vector<Function>& made);
+                       std::deque<Function>& made);
     void makeSamples();
     size_t rangeOf(double T) const;
 
@@ -69,6 +74,9 @@ private:
     std::vector<Coefficients> ranges_;
     Samples samples_;
     mutable std::vector<std::unique_ptr<SampleRange>> sampleRanges_;
+    enum class Shape : char { unknown, convex, ridged };
+    Shape shapeAt(size_t phase, size_t node) const;
+    mutable std::vector<std::atomic<Shape>> shapes_;  ///< phases x nodes; two threads may find the same one
 };
 
 }  // namespace soak
