@@ -79,7 +79,8 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
         for (int c = 0; c < n && promised < kQuadratic * kGas * T; ++c)
             if (dz[c] > 0.1 * local.root[c])
                 growth = std::max(growth, y[c] * std::exp(std::min(dz[c] / local.root[c], 60.0)));
-        alpha = change > kValley ? kValley / change : 1;
+        const double most = local.shifted ? kValley : 2 * kValley;
+        alpha = change > most ? most / change : 1;
         move(model, dz, alpha, y);
         if (local.shifted || growth > kGrowth) continue;
         if (alpha == 1 && leadsToKnown(m, y, known, sets)) return;
@@ -96,7 +97,7 @@ void Solver::descend(Minimum& m, double T, const Eigen::VectorXd& mu, const std:
 /// True when a known place of the phase no longer lies where it lay when every class of the phase was last open: what
 /// led to it then may lead elsewhere now, as when a miscibility gap opens.
 bool Solver::hasMoved(const Point& p, int phase, const std::vector<Minimum>& found) const {
-    constexpr double kMoved = 5e-4;
+    constexpr double kMoved = 1e-3;
     const int n = system_->phases()[static_cast<size_t>(phase)].size;
     const auto away = [&](const PhaseSet& set) {
         if (set.phase != phase) return false;
