@@ -117,8 +117,11 @@ Result<Alloy> Alloy::make(std::shared_ptr<const DataSet> data, const Chemistry& 
 
 Result<Alloy> Alloy::changed(const Chemistry& chemistry) const {
     auto other = make(inside_->data, chemistry, inside_->choice);
-    if (other && other.value().inside_->system == inside_->system)
-        other.value().inside_->solver->startFrom(inside_->solver->point());
+    if (!other || other.value().inside_->system != inside_->system) return other;
+    Inside& near = *other.value().inside_;
+    near.solver->startFrom(inside_->solver->point());
+    near.absentAt = inside_->absentAt;  // what forms on heating here does so there too
+    near.presentUpTo = inside_->presentUpTo;
     return other;
 }
 

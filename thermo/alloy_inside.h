@@ -25,8 +25,7 @@ struct Alloy::Inside {
     /// Temperatures (K) at which the heating phase (ferrite) is known to be absent or present: see labelAt.
     double absentAt = 0, presentUpTo = 0;
 
-    /// States of the last sweep, without what only speeds up their neighbours: where a state far from the last one
-    /// starts.
+    /// Every other state of the last sweep: where a state far from the last one starts.
     std::vector<Point> starts;
 
     Error failed(Error error, double T) const;

@@ -211,13 +211,7 @@ Result<Sweep> Alloy::sweep(double from_K, double to_K) {
 
     // The heating name (delta ferrite) holds from where the set appears until it vanishes again.
     in.starts.clear();
-    for (const Point& point : walk.points) {
-        Point start;
-        start.T = point.T;
-        start.sets = point.sets;
-        start.mu = point.mu;
-        in.starts.push_back(std::move(start));
-    }
+    for (size_t k = 0; k < walk.points.size(); k += 2) in.starts.push_back(walk.points[k]);
     bool heated = in.formsOnHeating(walk.points.front());
     Sweep sweep;
     size_t next = 0;
