@@ -116,7 +116,7 @@ Result<Sheet> Store::sheet(const QString& number, const QString& revision) const
     if (rows.error()) return *rows.error();
     if (found) return sheetOf(rows);
     return Error{
-        Fault::input, ("sheet " + number + (" " + revision).trimmed() + " is not in the store").toStdString(), {}, {}};
+        Fault::input, ("sheet " + (number + " " + revision).trimmed() + " is not in the store").toStdString(), {}, {}};
 }
 
 }  // namespace soak

@@ -17,8 +17,16 @@ Result<int> helpCommand(const QStringList&) {
   soakwright triage --csv FILE --store FILE     every heat of a delivery, worst first
       --furnace NAME, --threads N
       --sheets FOLDER                           also a draft sheet of every row that fits
+      --xlsx FILE                               also a workbook with live formulas, filters and charts
   soakwright sheet  --store FILE --heat ID --cycle NAME --furnace NAME --pdf FILE
       --setpoint C, --paper a4|letter, --issue NAME   without --issue a draft is written
+      --xlsx FILE, --language CODE, --second CODE     workbook; en, de, pl, pt; two languages side by side
+      --record                                        a page for the chart, readings and what differed
+      --templates FOLDER                              the shop's own wording and layout
+  soakwright packet --store FILE --sheet NUMBER --pdf FILE   all that an auditor asks for of one job, in one PDF
+      --revision LETTER
+  soakwright verify CODE --store FILE           does the sheet with this code still hold?
+      --copy FILE                               a bay's copy, asked when the store cannot be
   soakwright evidence                           published values beside the computed ones, bias and scatter
       --family NAME, --kind NAME                only these rows
       --write FILE                              bias and scatter of the limits, for the planner
@@ -30,8 +38,8 @@ Result<int> helpCommand(const QStringList&) {
   --set NAME chooses the data set; else the balance element does.   --date 2025-04-02 is "today".
   --json prints the same answer for programs. Temperatures are in °C, differences in K.
 
-  Exit status: 0 answered; 1 triage found rows that are outside, without window or not computed;
-  2 the question is wrong (units, elements, names, temperatures); 3 anything else failed.
+  Exit status: 0 answered; 1 triage found rows that are outside, without window or not computed, or verify found a sheet
+  that is not the current one; 2 the question is wrong (units, elements, names, temperatures); 3 anything else failed.
 )"));
     return 0;
 }

@@ -13,11 +13,11 @@ namespace {
 using namespace soak;
 using Command = Result<int> (*)(const QStringList&);
 
-const std::map<QString, Command> kCommands{{"state", cli::stateCommand},       {"sweep", cli::sweepCommand},
-                                           {"window", cli::windowCommand},     {"triage", cli::triageCommand},
-                                           {"sheet", cli::sheetCommand},       {"store", cli::storeCommand},
-                                           {"evidence", cli::evidenceCommand}, {"help", cli::helpCommand},
-                                           {"--help", cli::helpCommand},       {"-h", cli::helpCommand}};
+const std::map<QString, Command> kCommands{
+    {"state", cli::stateCommand},   {"sweep", cli::sweepCommand},   {"window", cli::windowCommand},
+    {"triage", cli::triageCommand}, {"sheet", cli::sheetCommand},   {"store", cli::storeCommand},
+    {"verify", cli::verifyCommand}, {"packet", cli::packetCommand}, {"evidence", cli::evidenceCommand},
+    {"help", cli::helpCommand},     {"--help", cli::helpCommand},   {"-h", cli::helpCommand}};
 
 /// 2 for a question that makes no sense, 3 for a failure on the way.
 int statusOf(const Error& error) { return error.fault == Fault::input || error.fault == Fault::range ? 2 : 3; }
@@ -38,7 +38,8 @@ std::unique_ptr<QCoreApplication> application(int& argc, char** argv, bool draws
 }  // namespace
 
 int main(int argc, char** argv) {
-    bool draws = argc > 1 && std::string_view(argv[1]) == "sheet";
+    const std::string_view word = argc > 1 ? argv[1] : "";
+    bool draws = word == "sheet" || word == "packet";
     for (int i = 2; i < argc; ++i) draws = draws || std::string_view(argv[i]) == "--sheets";
     const auto running = application(argc, argv, draws);
     const QStringList given = QCoreApplication::arguments().mid(1);

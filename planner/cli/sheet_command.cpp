@@ -5,18 +5,31 @@
 #include "planner/core/sheet_issue.h"
 #include "planner/core/shop_floor.h"
 #include "planner/sheet/render.h"
+#include "planner/sheet/workbook.h"
 
 namespace soak::cli {
 namespace {
 
-const QStringList kValued{"store",    "heat", "cycle", "furnace", "pdf",
-                          "setpoint", "date", "paper", "issue",   "band-rule"};
+const QStringList kValued{"store", "heat",  "cycle",     "furnace", "pdf",    "xlsx",     "setpoint",
+                          "date",  "paper", "band-rule", "issue",   "second", "language", "templates"};
 
 Result<Paper> paperIn(const Arguments& arguments) {
     const QString paper = arguments.text("paper").toLower();
     if (paper.isEmpty() || paper == "a4") return Paper::a4;
     if (paper == "letter") return Paper::letter;
     return Error{Fault::input, "--paper: \"" + paper.toStdString() + "\" is neither a4 nor letter", {}, {}};
+}
+
+Result<SheetOptions> optionsIn(const Arguments& arguments) {
+    const auto paper = paperIn(arguments);
+    if (!paper) return paper.error();
+    SheetOptions options;
+    options.paper = paper.value();
+    if (!arguments.text("language").isEmpty()) options.language = arguments.text("language");
+    options.second_language = arguments.text("second");
+    options.templates = arguments.text("templates");
+    options.record_page = arguments.has("record");
+    return options;
 }
 
 Result<Job> jobIn(const Arguments& arguments, const Store& store) {
@@ -36,14 +49,16 @@ Result<Job> jobIn(const Arguments& arguments, const Store& store) {
 }  // namespace
 
 Result<int> sheetCommand(const QStringList& given) {
-    const auto read = readArguments(given, kValued, {"json"});
+    const auto read = readArguments(given, kValued, {"json", "record"});
     if (!read) return read.error();
     const Arguments& arguments = read.value();
-    const auto path = arguments.required("store"), pdf = arguments.required("pdf");
+    const auto path = arguments.required("store");
     if (!path) return path.error();
-    if (!pdf) return pdf.error();
-    const auto paper = paperIn(arguments);
-    if (!paper) return paper.error();
+    const QString pdf = arguments.text("pdf"), xlsx = arguments.text("xlsx");
+    if (pdf.isEmpty() && xlsx.isEmpty())
+        return Error{Fault::input, "sheet needs --pdf FILE, --xlsx FILE, or both", {}, {}};
+    const auto options = optionsIn(arguments);
+    if (!options) return options.error();
     const auto date = arguments.dateIfGiven("date");
     if (!date) return date.error();
 
@@ -63,15 +78,19 @@ Result<int> sheetCommand(const QStringList& given) {
                              ? draftSheet(store.value(), answer.value(), job.value(), shelf.value().rules)
                              : issueSheet(store.value(), answer.value(), job.value(), shelf.value().rules, released_by);
     if (!content) return content.error();
-    SheetOptions options;
-    options.paper = paper.value();
     QStringList notices;
-    const auto rendered = renderPdf(content.value(), options, pdf.value(), &notices);
-    if (!rendered) return rendered.error();
+    if (!pdf.isEmpty()) {
+        const auto rendered = renderPdf(content.value(), options.value(), pdf, &notices);
+        if (!rendered) return rendered.error();
+    }
+    if (!xlsx.isEmpty()) {
+        const auto written = writeSheetWorkbook(content.value(), options.value(), xlsx);
+        if (!written) return written.error();
+    }
 
     const SheetContent& sheet = content.value();
     if (arguments.has("json"))
-        print(Json{{"pdf", pdf.value().toStdString()},
+        print(Json{{"pdf", pdf.toStdString()},
                    {"draft", sheet.draft},
                    {"number", sheet.number.toStdString()},
                    {"revision", sheet.revision.toStdString()},
@@ -79,8 +98,8 @@ Result<int> sheetCommand(const QStringList& given) {
                    {"draft_reasons", sheet.draft_reasons.join("; ").toStdString()}});
     else
         print(QString("%1 written to %2. %3\n")
-                  .arg(sheet.draft ? QString("Draft") : "Sheet " + sheet.number + " rev " + sheet.revision, pdf.value(),
-                       answer.value().reason));
+                  .arg(sheet.draft ? QString("Draft") : "Sheet " + sheet.number + " rev " + sheet.revision,
+                       pdf.isEmpty() ? xlsx : pdf, answer.value().reason));
     for (const QString& notice : notices) print(notice + "\n");
     return 0;
 }

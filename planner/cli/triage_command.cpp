@@ -5,6 +5,7 @@
 #include "planner/core/sheet_issue.h"
 #include "planner/core/shop_floor.h"
 #include "planner/sheet/render.h"
+#include "planner/sheet/workbook.h"
 
 #include <QDir>
 #include <QRegularExpression>
@@ -36,7 +37,7 @@ Result<int> writeSheets(const std::vector<TriageRow>& rows, const Store& store, 
 
 Result<int> triageCommand(const QStringList& given) {
     const auto read =
-        readArguments(given, {"csv", "store", "furnace", "date", "threads", "band-rule", "sheets"}, {"json"});
+        readArguments(given, {"csv", "store", "furnace", "date", "threads", "band-rule", "sheets", "xlsx"}, {"json"});
     if (!read) return read.error();
     const Arguments& arguments = read.value();
     const auto csv = arguments.required("csv"), path = arguments.required("store");
@@ -70,6 +71,11 @@ Result<int> triageCommand(const QStringList& given) {
         const auto written = writeSheets(rows, store.value(), shelf.value(), folder);
         if (!written) return written.error();
         if (!arguments.has("json")) print(QString("%1 draft sheets written to %2\n").arg(written.value()).arg(folder));
+    }
+    if (const QString workbook = arguments.text("xlsx"); !workbook.isEmpty()) {
+        const auto written = writeTriageWorkbook(rows, shelf.value().rules, workbook);
+        if (!written) return written.error();
+        if (!arguments.has("json")) print(QString("Workbook written to %1\n").arg(workbook));
     }
     return needsDecision(rows) ? kNeedsDecision : 0;
 }

@@ -7,6 +7,7 @@
 #include "base/units.h"
 #include "planner/core/band.h"
 #include "planner/core/cautions.h"
+#include "planner/core/fahrenheit_text.h"
 #include "planner/core/sheet_issue.h"
 #include "planner/core/units_text.h"
 #include "planner/core/verdict.h"
@@ -30,6 +31,8 @@ public:
     TwoUnits temperature(double temperature_C, Rounding round) const {
         return both({round(temperature_C), 0, "°C"}, {round(fahrenheit(temperature_C)), 0, "°F"});
     }
+    /// A sentence of core's in the controller's unit.
+    QString text(const QString& celsius) const { return fahrenheit_first_ ? inFahrenheit(celsius) : celsius; }
     TwoUnits difference(double difference_K, Rounding round) const {
         return both({round(difference_K), 0, "K"}, {round(fahrenheitDifference(difference_K)), 0, "°F"});
     }
@@ -42,8 +45,8 @@ private:
 };
 
 SheetLimit sheetLimit(const Limit& limit, const UnitsOf& units) {
-    SheetLimit made{limit.side, limit.cause, limit.because, limit.source, {}, {}};
-    if (!limit.temperature_C && !limit.remark.isEmpty()) made.cause += ": " + limit.remark;
+    SheetLimit made{limit.side, units.text(limit.cause), limit.because, limit.source, {}, {}};
+    if (!limit.temperature_C && !limit.remark.isEmpty()) made.cause += ": " + units.text(limit.remark);
     if (limit.temperature_C)
         made.temperature = units.temperature(*limit.temperature_C, limit.side == Side::floor ? up : down);
     if (limit.temperature_C && !limit.set) made.uncertainty = units.difference(limit.uncertainty_K, up);
@@ -102,17 +105,17 @@ void fillWhy(SheetContent& sheet, const SheetRequest& request, const UnitsOf& un
     const WindowAnswer& answer = request.answer;
     sheet.verdict = answer.verdict;
     // The heading beside it says the verdict's word already.
-    sheet.verdict_sentence = answer.reason.section(": ", 1);
+    sheet.verdict_sentence = units.text(answer.reason.section(": ", 1));
     if (!sheet.verdict_sentence.isEmpty()) sheet.verdict_sentence[0] = sheet.verdict_sentence[0].toUpper();
     if (answer.margin_K) sheet.margin = units.difference(*answer.margin_K, down);
     sheet.binding = bindingLimits(answer, units);
     if (answer.low_C) sheet.window_low = units.temperature(*answer.low_C, up);
     if (answer.high_C) sheet.window_high = units.temperature(*answer.high_C, down);
-    sheet.decision_rule =
-        QString(
-            "the whole band fits; margin at least %1 where people set the limit, else %2 or one "
-            "standard uncertainty")
-            .arg(withUnit(request.rules.tight_set_K, "K"), withUnit(request.rules.tight_computed_K, "K"));
+    sheet.decision_rule = QString(
+                              "the whole band fits; margin at least %1 where people set the limit, else %2 or one "
+                              "standard uncertainty")
+                              .arg(units.text(withUnit(request.rules.tight_set_K, "K")),
+                                   units.text(withUnit(request.rules.tight_computed_K, "K")));
     sheet.grade_check = answer.grade_check.verdict;
     for (const Finding& finding : answer.grade_check.findings) {
         const bool worth_paper = finding.fails || finding.source == "suggestion" || finding.text.contains("missing");
@@ -120,8 +123,8 @@ void fillWhy(SheetContent& sheet, const SheetRequest& request, const UnitsOf& un
     }
     sheet.left_out = answer.left_out;
     for (QString& element : sheet.left_out) element += QString(QChar(0x2009)) + "%";
-    sheet.published = answer.published;
-    sheet.remarks = answer.remarks;
+    for (const QString& range : answer.published) sheet.published << units.text(range);
+    for (const QString& remark : answer.remarks) sheet.remarks << units.text(remark);
 }
 
 void fillFurnace(SheetContent& sheet, const SheetRequest& request, const UnitsOf& units) {

@@ -29,7 +29,4 @@ Result<SheetContent> draftSheet(const Store& store, const WindowAnswer& answer, 
 Result<SheetContent> issueSheet(Store& store, const WindowAnswer& answer, const Job& job, const ShopRules& rules,
                                 const QString& released_by);
 
-/// The sheet as JSON, what the store keeps and the code on the paper vouches for.
-QByteArray sheetJson(const SheetContent& content);
-
 }  // namespace soak

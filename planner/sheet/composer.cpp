@@ -80,6 +80,7 @@ Row Composer::boxes(const std::vector<FillIn>& fillIns, double x, double width) 
         row.marks.add(std::move(captions[i].marks));
         const QRectF box(left, captionHeight + 0.25, each, templates.layout.box_mm);
         row.marks.figures.push_back(rectangle(box, 0.35));
+        if (fillIns[i].hold) row.marks.figures.push_back(rectangle(box.adjusted(-0.9, -0.9, 0.9, 0.9), 0.5));
         addHint(*this, fillIns[i], box, row.marks);
     }
     return row;

@@ -16,13 +16,16 @@ struct Section {
     bool heavy = false;        ///< thick rules: what must not be missed
     std::vector<Row> rows;     ///< at least one
     bool flows = false;        ///< may begin on one page and end on the next even when it would fit on one
+    bool new_page = false;     ///< begins on a page of its own
+    QStringList note = {};     ///< under the heading, in the size of captions
 };
 
 struct FillIn {
     enum class Hint { nothing, clock, clockSeconds };
     QStringList caption;
     Hint hint = Hint::nothing;
-    QString unit;  ///< printed at the right end of the box
+    QString unit = {};  ///< printed at the right end of the box
+    bool hold = false;  ///< double frame: stop until it is signed
 };
 
 /// What every section is composed with. All widths in mm; rows start at x = 0.
@@ -82,6 +85,9 @@ std::optional<Section> wrongSection(const Composer& composer);
 std::optional<Section> cautionSection(const Composer& composer);
 std::optional<Section> whySection(const Composer& composer);
 std::optional<Section> signSection(const Composer& composer);
+
+/// The back page: a place for the recorder's chart, readings, and what differed from the plan.
+Section recordSection(const Composer& composer);
 
 /// The load as seen from the door: pieces, the gap between them, sensors with their names.
 Row loadSketch(const Composer& composer, const LoadSketch& sketch, double width);

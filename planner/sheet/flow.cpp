@@ -24,7 +24,7 @@ public:
         const double start = std::max(section.rows.front().height, headingHeight);
         const double pageRoom = bottom_ - margin_ - heightOf(nextHead(composer_)) - rule;
         const double needed = section.flows || whole > pageRoom ? start : whole;
-        if (y_ + rule + needed > bottom_) begin(nextHead(composer_));
+        if (section.new_page || y_ + rule + needed > bottom_) begin(nextHead(composer_));
         open(section, false);
         for (const Row& row : section.rows) {
             if (y_ + row.height > bottom_ + 1e-6 && !fresh_) {
@@ -64,6 +64,8 @@ private:
             composer_.typesetter.paragraph(number + section.heading.first(), composer_.bold(), 0, width);
         for (const QString& second : section.heading.mid(1))
             append(rows, composer_.typesetter.paragraph(second, composer_.body(), 0, width));
+        for (const QString& line : section.note)
+            append(rows, composer_.typesetter.paragraph(line, composer_.caption(), 0, width));
         if (continued)
             append(rows,
                    composer_.typesetter.paragraph(composer_.text("page.continued"), composer_.caption(), 0, width));

@@ -53,7 +53,7 @@ QString unknownEntry(const toml::table& table) {
                 });
                 if (!known) return entry + "." + QString::fromStdString(std::string(innerKey.str()));
             }
-        } else if (entry != "fonts" && entry != "sections" && entry != "signatures") {
+        } else if (entry != "fonts" && entry != "sections" && entry != "signatures" && entry != "hold_points") {
             return entry;
         }
     }
@@ -90,9 +90,12 @@ Result<Layout> Layout::parse(const QByteArray& toml, const QString& name) {
     layout.fonts = textList(table, "fonts");
     layout.signatures = textList(table, "signatures");
     layout.sections = textList(table, "sections");
+    layout.hold_points = textList(table, "hold_points");
     if (layout.fonts.isEmpty() || layout.fonts.contains("")) return wrong(name, "fonts must name at least one family");
     if (layout.signatures.isEmpty() || layout.signatures.size() > 8 || layout.signatures.contains(""))
         return wrong(name, "signatures must name one to eight boxes");
+    for (const QString& hold : layout.hold_points)
+        if (!layout.signatures.contains(hold)) return wrong(name, "hold_points: \"" + hold + "\" is no signature");
     QStringList given = layout.sections, wanted = kSections;
     given.sort();
     wanted.sort();

@@ -13,6 +13,7 @@ namespace soak {
 /// that can be read or written in at the furnace, or when a section is missing or named twice.
 struct Layout {
     QStringList fonts, sections, signatures;
+    QStringList hold_points;  ///< of the signatures: the work stops there until they stand
     double title_pt = 0, strong_pt = 0, body_pt = 0, caption_pt = 0, small_pt = 0, value_pt = 0;
     double leading_most = 0, leading_least = 0;  ///< line distance in type sizes
     double digit_mm = 0, box_mm = 0, margin_mm = 0, gutter_mm = 0, gap_most_mm = 0, gap_least_mm = 0, code_mm = 0;

@@ -80,15 +80,18 @@ QString titleOf(const Composer& composer) {
                          : composer.text("page.sheet", {{"number", content.number}, {"revision", content.revision}});
 }
 
-Result<PreparedSheet> layOut(const SheetContent& content, const Templates& templates, Paper choice, double leading) {
+Result<PreparedSheet> layOut(const SheetContent& content, const Templates& templates, const SheetOptions& options,
+                             double leading) {
     const Layout& layout = templates.layout;
     auto typesetter = Typesetter::of(layout, leading);
     if (!typesetter) return std::move(typesetter).error().within("sheet");
-    const QPageSize paper(choice == Paper::a4 ? QPageSize::A4 : QPageSize::Letter);
+    const QPageSize paper(options.paper == Paper::a4 ? QPageSize::A4 : QPageSize::Letter);
     const QSizeF size_mm = paper.size(QPageSize::Millimeter);
     const double width = size_mm.width() - 2 * layout.margin_mm;
     const Composer composer{content, templates, typesetter.value(), width, width - layout.gutter_mm};
-    auto pages = flow(composer, sectionsOf(composer), size_mm);
+    std::vector<Section> sections = sectionsOf(composer);
+    if (options.record_page) sections.push_back(recordSection(composer));
+    auto pages = flow(composer, sections, size_mm);
     if (!pages) return std::move(pages).error().within("sheet");
     auto coded = fillCode(content, pages.value());
     if (!coded) return std::move(coded).error().within("sheet");
@@ -106,9 +109,9 @@ Result<PreparedSheet> prepareSheet(const SheetContent& content, const SheetOptio
     auto templates = loadTemplates(options.templates, options.language, options.second_language);
     if (!templates) return std::move(templates).error().within("templates");
     const Layout& layout = templates.value().layout;
-    auto sheet = layOut(content, templates.value(), options.paper, layout.leading_most);
-    if (!sheet || sheet.value().pages.size() == 1) return sheet;
-    auto closer = layOut(content, templates.value(), options.paper, layout.leading_least);
+    auto sheet = layOut(content, templates.value(), options, layout.leading_most);
+    if (!sheet || sheet.value().pages.size() == (options.record_page ? 2 : 1)) return sheet;
+    auto closer = layOut(content, templates.value(), options, layout.leading_least);
     return closer && closer.value().pages.size() < sheet.value().pages.size() ? closer : sheet;
 }
 

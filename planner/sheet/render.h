@@ -20,8 +20,9 @@ enum class Paper { a4, letter };
 struct SheetOptions {
     Paper paper = Paper::a4;
     QString language = "en";
-    QString second_language;  ///< printed under each line; empty: one language
-    QString templates;        ///< the shop's own templates; empty or a file not there: the installed ones
+    QString second_language;   ///< printed under each line; empty: one language
+    bool record_page = false;  ///< a further page for the chart, readings and what differed from the plan
+    QString templates;         ///< the shop's own templates; empty or a file not there: the installed ones
 };
 
 /// A sheet laid out: the same pages go to a PDF, a printer, a preview or a picture.

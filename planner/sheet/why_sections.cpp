@@ -172,9 +172,14 @@ std::optional<Section> whySection(const Composer& composer) {
 std::optional<Section> signSection(const Composer& composer) {
     std::vector<FillIn> fillIns;
     for (const QString& who : composer.templates.layout.signatures)
-        fillIns.push_back({{composer.word("sign", who)}, FillIn::Hint::nothing, ""});
-    return Section{
+        fillIns.push_back({{composer.word("sign", who)},
+                           FillIn::Hint::nothing,
+                           {},
+                           composer.templates.layout.hold_points.contains(who)});
+    Section section{
         composer.both("sign.heading"), 0, false, false, {composer.boxes(fillIns, 0, composer.content_width)}, false};
+    if (!composer.templates.layout.hold_points.isEmpty()) section.note = composer.both("sign.hold");
+    return section;
 }
 
 }  // namespace soak

@@ -102,7 +102,7 @@ QStringList heatCells(const Composer& composer, const SheetHeat& heat) {
 
 std::vector<Row> heatTable(const Composer& composer, double width) {
     static const std::vector<Column> columns = {
-        {"load.heat", 0.30}, {"load.grade", 0.36}, {"load.pieces", 0.14}, {"load.section", 0.20}};
+        {"load.heat", 0.28}, {"load.grade", 0.36}, {"load.pieces", 0.14}, {"load.section", 0.22}};
     QStringList captions;
     for (const Column& column : columns) captions << composer.both(column.key).join(" / ");
     std::vector<Row> rows = tableRow(composer, captions, columns, composer.caption(), width);

@@ -4,6 +4,7 @@
 #include "heats.h"
 #include "planner/core/cautions.h"
 #include "planner/core/sheet_issue.h"
+#include "planner/core/sheet_json.h"
 #include "planner/core/verdict.h"
 #include "shop.h"
 
@@ -132,4 +133,29 @@ TEST_CASE("a sheet's JSON changes with its contents") {
     other.setpoint.controller.value += 5;
     CHECK(sheetJson(sheet) == sheetJson(makeSheet(request())));
     CHECK(sheetJson(sheet) != sheetJson(other));
+}
+
+TEST_CASE("a sheet comes back from its JSON as it was, and from an older program's as far as it goes") {
+    SheetContent sheet = makeSheet(request());
+    sheet.heats[0].pieces = 4;
+    sheet.max_delay = Quantity{60, 0, "s"};
+    sheet.deference << "ask the foreman";
+    const auto back = sheetFromJson(sheetJson(sheet));
+    REQUIRE(back);
+    CHECK(sheetJson(back.value()) == sheetJson(sheet));
+    CHECK(*back.value().heats[0].pieces == 4);
+    CHECK(back.value().sketch->sensors.size() == sheet.sketch->sensors.size());
+    CHECK(back.value().verdict == Verdict::inside);
+    const auto older = sheetFromJson(R"({"kind":"harden","setpoint":{"controller":{"value":1886,"unit":"°F"}}})");
+    REQUIRE(older);
+    CHECK(older.value().setpoint.controller.value == 1886);
+    CHECK(older.value().heats.empty());
+    CHECK_FALSE(sheetFromJson("no sheet"));
+}
+
+TEST_CASE("the sheet of a Fahrenheit furnace speaks Fahrenheit in its sentences too") {
+    const SheetContent sheet = makeSheet(request());
+    CHECK(sheet.verdict_sentence.contains("\u2009°F"));
+    CHECK_FALSE(sheet.verdict_sentence.contains("°C"));
+    CHECK_FALSE(sheet.decision_rule.contains("\u2009K"));
 }

@@ -6,8 +6,9 @@ using namespace soak;
 
 namespace {
 
-SheetOptions on(Paper paper, const QString& second = "") {
+SheetOptions on(Paper paper, const QString& second = "", bool record_page = false) {
     SheetOptions options;
+    options.record_page = record_page;
     options.paper = paper;
     options.second_language = second;
     return options;
@@ -18,7 +19,7 @@ std::vector<PreparedSheet> everyKind() {
             prepared(sample::solutionAnneal(), on(Paper::letter)),
             prepared(sample::solutionAnneal(), on(Paper::a4, "de")),
             prepared(sample::draft()),
-            prepared(sample::harden(), on(Paper::letter, "pl")),
+            prepared(sample::harden(), on(Paper::letter, "pl", true)),
             prepared(sample::overlong()),
             prepared(sample::overlong(), on(Paper::letter, "pt"))};
 }
@@ -85,6 +86,28 @@ TEST_CASE("what the crew reads is 12 points or more, what it fills in is 10 mm o
         CHECK(mark.at.width() >= 20);
     }
     CHECK(boxes == 5 + 5 + 6);  // soak, quench, signatures
+}
+
+TEST_CASE("the hold points have a double frame and say what it means", "[sheet]") {
+    const PreparedSheet sheet = prepared(sample::solutionAnneal());
+    const auto frames = std::count_if(
+        sheet.pages[0].marks.figures.begin(), sheet.pages[0].marks.figures.end(),
+        [](const FigureMark& mark) { return mark.kind == FigureMark::Kind::rectangle && mark.at.height() == 11.8; });
+    CHECK(frames == 3);  // loaded, soak started, quenched
+    CHECK(textOf(sheet).contains("Double frame"));
+}
+
+TEST_CASE("the record page follows the sheet: chart, readings, what differed", "[sheet]") {
+    const PreparedSheet sheet = prepared(sample::solutionAnneal(), on(Paper::a4, "", true));
+    REQUIRE(sheet.pages.size() == 2);
+    const QString text = textOf(sheet.pages[1]);
+    for (const char* words : {"Sheet 2025-0412 rev B", "Attach the recorder chart here", "Second reading",
+                              "What differed from the plan", "page 2 of 2"})
+        CHECK(text.contains(words));
+    const auto dashed = std::find_if(sheet.pages[1].marks.figures.begin(), sheet.pages[1].marks.figures.end(),
+                                     [](const FigureMark& mark) { return mark.dashed; });
+    REQUIRE(dashed != sheet.pages[1].marks.figures.end());
+    CHECK(dashed->at.height() >= 100);  // a recorder's strip is 100 mm wide (common practice)
 }
 
 TEST_CASE("nothing leaves the page and no two texts touch, whatever the content", "[sheet]") {

@@ -7,6 +7,7 @@
 
 #include "look.h"
 #include "planner/sheet/code.h"
+#include "planner/sheet/packet.h"
 #include "sample.h"
 
 using namespace soak;
@@ -49,6 +50,7 @@ TEST_CASE("every kind of sheet is written as PDF and PNG to be looked at", "[ren
         options.paper = one.paper;
         options.language = one.language;
         options.second_language = one.second;
+        options.record_page = options.second_language == "pl";
         const QString stem = QString(SHEET_SAMPLES) + "/" + one.name;
         const auto written = renderPdf(one.content, options, stem + ".pdf");
         if (!written) FAIL(written.error().text());
@@ -159,4 +161,26 @@ TEST_CASE("an identity too long for a QR code is refused", "[render]") {
     const auto sheet = prepareSheet(content, {});
     REQUIRE_FALSE(sheet);
     CHECK(sheet.error().message.find("does not fit a QR code") != std::string::npos);
+}
+
+TEST_CASE("a job packet holds the sheet, its record page and what it rests on", "[render]") {
+    Heat heat;
+    heat.number = "K40217";
+    heat.grade = "1.4307";
+    heat.source = "heats.csv line 2";
+    Content carbon;
+    carbon.raw = "0,019";
+    carbon.wt = 0.019;
+    carbon.digit_wt = 0.001;
+    heat.analysis["C"] = carbon;
+    const SheetContent content = sample::solutionAnneal();
+    const QString text = packetText(content, heat);
+    for (const QString& words : {QString("2025-0412 rev B"), QString("0,019"), QString("heats.csv line 2"),
+                                 QString("delta ferrite begins"), content.decision_rule, content.qr_payload})
+        CHECK(text.contains(words.toHtmlEscaped()));
+    CHECK(packetText(content, {}).contains("no longer holds"));
+    const QString path = QString(SHEET_SAMPLES) + "/packet.pdf";
+    const auto written = renderPacket(content, heat, {}, path);
+    REQUIRE(written);
+    CHECK(bytesOf(path).contains("/Count 3"));  // sheet, record, text
 }
