@@ -113,7 +113,9 @@ bool Solver::settle(Point& p) {
     const auto& models = system_->phases();
     double amounts[Curvature::kMostElements];
     const Eigen::Map<const Eigen::VectorXd> a(amounts, system_->elementCount());
-    // Energy above the plane mu, and a price on what is missing of the alloy.
+    // Energy above the plane mu, and a price on what is missing of the alloy: more than the plane itself may move, else
+    // a step could buy a lower energy with another alloy.
+    Eigen::VectorXd price(system_->elementCount());
     const auto merit = [&](Point& q, const Eigen::VectorXd& mu) {
         double sum = 0;
         Eigen::VectorXd lack = b_;
@@ -123,7 +125,7 @@ bool Solver::settle(Point& p) {
             sum += set.n * (model.gibbs(at_.data(), q.T, set.y.data()) - a.dot(mu));
             lack -= set.n * a;
         }
-        return sum + 10 * kGas * q.T * lack.cwiseAbs().sum();
+        return sum + lack.cwiseAbs().dot(price);
     };
     ++counters.settled;
     setTemperature(p.T);
@@ -151,6 +153,7 @@ bool Solver::settle(Point& p) {
             continue;
         }
         const Eigen::VectorXd plane = p.mu + step_.mu;
+        price = 2 * step_.mu.cwiseAbs().array() + 10 * kGas * p.T;
         const double before = merit(p, plane);
         Point next = p;
         for (int halving = 0;; ++halving, reach /= 2) {
