@@ -204,10 +204,14 @@ void AnswerPanel::setAnswer(const WindowAnswer& answer) {
     fillLimits();
     grade_fold_->setTitle(tr("Grade check: %1").arg(answer_.grade_check.verdict));
     grade_text_->setText(gradeCheckText(answer_.grade_check));
-    published_->setText(linesOr(answer_.published, tr("No published range of this grade is in the store.")) +
-                        QStringLiteral("<br><i>") + tr("For information: the limits above decide.") +
-                        QStringLiteral("</i>"));
-    QStringList remarks = answer_.remarks;
+    fillRemarks();
+}
+
+void AnswerPanel::fillRemarks() {
+    published_->setText(
+        linesOr(units_.sentences(answer_.published), tr("No published range of this grade is in the store.")) +
+        QStringLiteral("<br><i>") + tr("For information: the limits above decide.") + QStringLiteral("</i>"));
+    QStringList remarks = units_.sentences(answer_.remarks);
     if (!answer_.left_out.isEmpty())
         remarks << tr("Kept and grade-checked, not in the equilibrium: %1.")
                        .arg(answer_.left_out.join(QStringLiteral(", ")));
@@ -222,7 +226,7 @@ void AnswerPanel::follow(const WindowAnswer& answer) {
     answer_.sweep.reset();  // held as ribbons; a drag must not copy it
     mark_->setVerdict(answer_.verdict);
     headline_->setText(verdictHeadline(answer_, units_));
-    reason_->setText(unbroken(answer_.reason));
+    reason_->setText(unbroken(units_.sentence(answer_.reason)));
     fillStack();
     fillButtons();
     fillFollowing();
@@ -232,10 +236,12 @@ void AnswerPanel::setUnits(Units units) {
     units_ = units;
     if (!body_->isVisibleTo(this)) return;
     headline_->setText(verdictHeadline(answer_, units_));
+    reason_->setText(unbroken(units_.sentence(answer_.reason)));
     fillStack();
     fillButtons();
     fillFollowing();
     fillLimits();
+    fillRemarks();
 }
 
 void AnswerPanel::fillLimitLine(const Line& line, const std::vector<Limit>& limits, const QString& name) {
@@ -249,8 +255,9 @@ void AnswerPanel::fillLimitLine(const Line& line, const std::vector<Limit>& limi
     line.value->setText(limitTemperature(*limit, units_));
     const bool scatters = limit->temperature_C && !limit->set && limit->uncertainty_K > 0;
     const QString spread = scatters ? QStringLiteral(" (±%1)").arg(units_.difference(limit->uncertainty_K)) : QString();
-    line.note->setText(unbroken(
-        limit->temperature_C || limit->remark.isEmpty() ? causeWithoutTemperature(*limit) + spread : limit->remark));
+    line.note->setText(unbroken(limit->temperature_C || limit->remark.isEmpty()
+                                    ? causeWithoutTemperature(*limit, units_) + spread
+                                    : units_.sentence(limit->remark)));
 }
 
 void AnswerPanel::fillStack() {
@@ -297,7 +304,8 @@ void AnswerPanel::fillButtons() {
     const auto& suggested = answer_.suggested_setpoint_C;
     const bool elsewhere = suggested && std::abs(*suggested - answer_.setpoint_C) > 0.01;
     suggest_->setEnabled(elsewhere);  // it stays where it is, so that nothing jumps while dragging
-    suggest_->setText(elsewhere   ? tr("&Use %1, which fits better").arg(units_.temperature(*suggested))
+    suggest_->setText(elsewhere
+                          ? tr("&Use %1, which fits better").arg(temperatureText(*suggested, controller_fahrenheit_))
                       : suggested ? tr("No setpoint fits better")
                                   : tr("No setpoint fits"));
 }
@@ -322,8 +330,9 @@ void AnswerPanel::fillLimits() {
     for (int row = 0; row < int(listed_.size()); ++row) {
         const Limit& limit = listed_[size_t(row)];
         const QString side = limit.side == Side::floor ? tr("Floor") : tr("Ceiling");
-        auto* name = new QTableWidgetItem(side + QStringLiteral(": ") + limit.cause);
-        name->setToolTip(limit.cause);
+        const QString cause = units_.sentence(limit.cause);
+        auto* name = new QTableWidgetItem(side + QStringLiteral(": ") + cause);
+        name->setToolTip(cause);
         limits_->setItem(row, 0, name);
         auto* at = new QTableWidgetItem(limit.temperature_C ? limitTemperature(limit, units_)
                                         : limit.impossible  ? tr("none")

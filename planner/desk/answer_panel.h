@@ -32,6 +32,8 @@ public:
     void follow(const WindowAnswer& answer);
     void clear(const QString& sentence);
     void setUnits(Units units);
+    /// The scale of the furnace's controller: setpoints to be set there are named in it first.
+    void setController(bool fahrenheit) { controller_fahrenheit_ = fahrenheit; }
     /// Opens the list of limits at one of them, with its reason, uncertainty and sensitivities.
     void showLimit(Side side, int index);
 
@@ -51,6 +53,7 @@ private:
     Line addLine(QGridLayout* grid, int row, bool strong);
     QLabel* addTextFold(QVBoxLayout* column, const QString& title, Fold*& fold);
     void fillLimits();
+    void fillRemarks();
     void fillFollowing();
     void fillStack();
     void fillLimitLine(const Line& line, const std::vector<Limit>& limits, const QString& name);
@@ -60,6 +63,7 @@ private:
     WindowAnswer answer_;
     Ribbons ribbons_;
     Units units_;
+    bool controller_fahrenheit_ = false;
     std::vector<Limit> listed_;  // as in the table: ceilings from the highest down to the lowest floor
 
     QWidget* body_;

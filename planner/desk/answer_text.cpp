@@ -60,11 +60,11 @@ QString verdictHeadline(const WindowAnswer& answer, const Units& units) {
 }
 
 QString limitDetails(const Limit& limit, const Units& units) {
-    QString text = QStringLiteral("<b>") + limit.cause.toHtmlEscaped() + QStringLiteral("</b>");
+    QString text = QStringLiteral("<b>") + units.sentence(limit.cause).toHtmlEscaped() + QStringLiteral("</b>");
     if (!limit.because.isEmpty()) text += QStringLiteral("<br>") + tr("Why: %1").arg(limit.because.toHtmlEscaped());
     if (!limit.drivers.isEmpty())
         text += QStringLiteral("<br>") + tr("In this heat: %1").arg(limit.drivers.toHtmlEscaped());
-    if (!limit.remark.isEmpty()) text += QStringLiteral("<br>") + limit.remark.toHtmlEscaped();
+    if (!limit.remark.isEmpty()) text += QStringLiteral("<br>") + units.sentence(limit.remark).toHtmlEscaped();
     if (!limit.source.isEmpty()) text += QStringLiteral("<br>") + tr("Source: %1").arg(limit.source.toHtmlEscaped());
     if (limit.margin_K != 0)
         text += QStringLiteral("<br>") +

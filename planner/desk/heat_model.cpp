@@ -113,7 +113,8 @@ QString HeatModel::textAt(const Row& row, int column) const {
 QString HeatModel::whyText(const Row& row) const {
     if (!row.judged) return tr("Not judged yet");
     const TriageRow& judged = *row.judged;
-    return judged.furnace.isEmpty() ? judged.reason : tr("In %1. %2").arg(judged.furnace, judged.reason);
+    const QString reason = units_.sentence(judged.reason);
+    return judged.furnace.isEmpty() ? reason : tr("In %1. %2").arg(judged.furnace, reason);
 }
 
 QVariant HeatModel::data(const QModelIndex& index, int role) const {

@@ -245,6 +245,7 @@ void MainWindow::ask() {
     }
     forgetAnswer();
     rail_->setStepper(stepperOf(*furnace));
+    answer_panel_->setController(furnace->controller_fahrenheit);
     judge_.ask(data_, Job{heat_, *cycle, *furnace, {}, {}});
     statusBar()->showMessage(tr("Computing the window of %1…").arg(heat_.number));
 }

@@ -151,7 +151,7 @@ void Rail::collectLedges(const WindowAnswer& answer) {
 void Rail::writeLedges() {
     for (Ledge& ledge : ledges_) {
         ledge.temperature = limitTemperature(ledge.limit, units_);
-        ledge.cause = causeWithoutTemperature(ledge.limit);
+        ledge.cause = causeWithoutTemperature(ledge.limit, units_);
     }
 }
 

@@ -34,12 +34,17 @@ QString Units::signedDifference(double kelvins) const {
     return kelvins > 0 ? QLatin1Char('+') + text : text;
 }
 
+QStringList Units::sentences(QStringList celsius) const {
+    for (QString& line : celsius) line = sentence(line);
+    return celsius;
+}
+
 QString unbroken(QString text) { return text.replace(QChar(0x2009), QChar(0x202f)); }
 
-QString causeWithoutTemperature(const Limit& limit) {
-    if (!limit.temperature_C) return limit.cause;
+QString causeWithoutTemperature(const Limit& limit, const Units& units) {
+    if (!limit.temperature_C) return units.sentence(limit.cause);
     const QString tail = QLatin1Char(' ') + celsiusText(*limit.temperature_C);
-    return limit.cause.endsWith(tail) ? limit.cause.chopped(tail.size()) : limit.cause;
+    return units.sentence(limit.cause.endsWith(tail) ? limit.cause.chopped(tail.size()) : limit.cause);
 }
 
 QString limitTemperature(const Limit& limit, const Units& units) {

@@ -23,6 +23,22 @@ private slots:
         QCOMPARE(number(-0.2), QStringLiteral("0"));
     }
 
+    void sentences_of_core_are_shown_in_the_scale_of_the_desk() {
+        const Units celsius{false}, fahrenheit{true};
+        const QString reason = QStringLiteral(
+            "Tight: the coldest metal, 1048.6\u2009°C, stays 8.6\u2009K above specification minimum 1040\u2009°C.");
+        QCOMPARE(celsius.sentence(reason), reason);
+        QCOMPARE(fahrenheit.sentence(reason),
+                 QStringLiteral("Tight: the coldest metal, 1919.5\u2009°F, stays 15.5\u2009°F above specification "
+                                "minimum 1904\u2009°F."));
+        QCOMPARE(fahrenheit.sentence(QStringLiteral("sigma dissolved + 20\u2009K, M23C6 gone, K40217, 5 Knots")),
+                 QStringLiteral("sigma dissolved + 36\u2009°F, M23C6 gone, K40217, 5 Knots"));
+        QCOMPARE(fahrenheit.sentence(QStringLiteral("1020 to 1100 °C; 1020-1100 °C; \u221240\u2009°C")),
+                 QStringLiteral("1868 to 2012\u2009°F; 1868-2012\u2009°F; \u221240\u2009°F"));
+        QCOMPARE(fahrenheit.sentence(QStringLiteral("A setpoint of 1886\u2009°F (1030\u2009°C) in F4 fits better.")),
+                 QStringLiteral("A setpoint of 1886\u2009°F in F4 fits better."));
+    }
+
     void differences_convert_by_1_8_only() {
         QCOMPARE(Units{true}.difference(10), QStringLiteral("18\u2009°F"));
         QCOMPARE(Units{false}.signedDifference(-3), QStringLiteral("\u22123\u2009K"));

@@ -1,0 +1,36 @@
+# SPDX-License-Identifier: GPL-3.0-or-later
+# bash completion for soakwright(1)
+_soakwright() {
+    local word=${COMP_WORDS[COMP_CWORD]} before=${COMP_WORDS[COMP_CWORD - 1]} options=""
+    if [ "$COMP_CWORD" -eq 1 ]; then
+        mapfile -t COMPREPLY < <(compgen -W "state sweep window triage sheet packet verify evidence store help --version" -- "$word")
+        return
+    fi
+    case $before in
+        --store | --csv | --pdf | --xlsx | --write | --baseline | --copy)
+            mapfile -t COMPREPLY < <(compgen -f -- "$word")
+            return ;;
+        --sheets | --templates)
+            mapfile -t COMPREPLY < <(compgen -d -- "$word")
+            return ;;
+        --paper)
+            mapfile -t COMPREPLY < <(compgen -W "a4 letter" -- "$word")
+            return ;;
+        --language | --second)
+            mapfile -t COMPREPLY < <(compgen -W "en de pl pt" -- "$word")
+            return ;;
+    esac
+    case ${COMP_WORDS[1]} in
+        state) options="--wt --at --with --without --set --json" ;;
+        sweep) options="--wt --from --to --with --without --set --json" ;;
+        window) options="--wt --family --grade --kind --form --heat --cycle --furnace --store --setpoint --band-rule --date --set --json" ;;
+        triage) options="--csv --store --furnace --threads --sheets --xlsx --band-rule --date --json" ;;
+        sheet) options="--store --heat --cycle --furnace --pdf --xlsx --setpoint --paper --issue --language --second --record --templates --band-rule --date --json" ;;
+        packet) options="--store --sheet --revision --pdf" ;;
+        verify) options="--store --copy --json" ;;
+        evidence) options="--family --kind --write --baseline --json" ;;
+        store) options="new --demo" ;;
+    esac
+    mapfile -t COMPREPLY < <(compgen -W "$options" -- "$word")
+}
+complete -o filenames -F _soakwright soakwright
