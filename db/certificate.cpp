@@ -8,6 +8,7 @@
 
 #include "db/certificate_columns.h"
 #include "db/csv.h"
+#include "db/xlsx.h"
 
 namespace soak {
 namespace {
@@ -136,17 +137,25 @@ CertificateRow readRow(const CsvRow& csv, const CertificateColumns& columns, con
     return row;
 }
 
+/// A row with a number under an element is no repeated header: spares understanding every cell of every row.
+bool mayBeHeader(const QStringList& cells, const CertificateColumns& columns) {
+    for (qsizetype i = 0; i < columns.names.size() && i < cells.size(); ++i)
+        if (columns.isElement(i) && !cells[i].isEmpty() && cells[i].front().isDigit()) return false;
+    return true;
+}
+
 /// The word for a line that is no analysis, or nothing when it is one.
-QString otherKind(const QStringList& cells, CertificateColumns& columns) {
+QString otherKind(const QStringList& cells, CertificateColumns& columns, const ColumnChoices& choices) {
     static const QRegularExpression limits(R"(^(min|max|mini|maxi|minimum|maximum|soll|limits?|spec)\b)",
                                            QRegularExpression::CaseInsensitiveOption);
     static const QRegularExpression total(R"(^(summe|total|sum|subtotal|average|mean|mittel(wert)?)\b)",
                                           QRegularExpression::CaseInsensitiveOption);
     const auto cell = [&](const char* meaning) { return cells.value(columns.indexOf(meaning)).trimmed(); };
-    if (std::optional<CertificateColumns> repeated = columnsOf(cells)) {
-        columns = std::move(*repeated);
-        return "header";
-    }
+    if (mayBeHeader(cells, columns))
+        if (std::optional<CertificateColumns> repeated = columnsOf(cells, choices)) {
+            columns = std::move(*repeated);
+            return "header";
+        }
     QString first;
     for (const QString& text : cells)
         if (first.isEmpty()) first = text.trimmed();
@@ -248,6 +257,91 @@ void preferLadle(Heat& heat) {
         }
 }
 
+/// One way to see the file as a table.
+struct Table {
+    QString name;
+    std::vector<CsvRow> lines;
+    bool comma_is_usual = true;  ///< a decimal comma is this file's way, no oddity of one cell
+};
+
+/// A workbook's sheets, or a text cut at each separator that certificates use.
+Result<std::vector<Table>> tablesOf(const QByteArray& bytes, const QString& name) {
+    std::vector<Table> tables;
+    if (isZip(bytes)) {
+        Result<std::vector<XlsxSheet>> sheets = readXlsx(bytes, name);
+        if (!sheets) return sheets.error();
+        const bool several = sheets.value().size() > 1;
+        for (XlsxSheet& sheet : sheets.value())
+            tables.push_back({several ? name + " sheet " + sheet.name : name, std::move(sheet.rows), true});
+        return tables;
+    }
+    const char* foreign = bytes.startsWith("%PDF") ? "a PDF: ask the mill for a table, or type it in"
+                          : bytes.startsWith("\xD0\xCF\x11\xE0")
+                              ? "an old or encrypted workbook: save it as .xlsx or CSV"
+                              : nullptr;
+    if (foreign) return Error{Fault::input, std::string("this is ") + foreign, {}, {name.toStdString()}};
+    const QString text = decodeText(bytes);
+    for (const QChar separator : {QChar(';'), QChar(','), QChar('\t')})
+        tables.push_back({name, parseCsv(text, separator), separator != ','});
+    return tables;
+}
+
+/// What stands behind a label such as "Lieferant / Supplier" in the lines above the table.
+QString labelled(const std::vector<CsvRow>& lines, size_t header, const QStringList& labels) {
+    static const QRegularExpression marks(R"([.:\s]+$)");
+    for (size_t i = 0; i < header; ++i)
+        for (qsizetype k = 0; k < lines[i].cells.size(); ++k) {
+            const QString cell = lines[i].cells[k], label = cell.section(':', 0, 0);
+            const QStringList parts = label.split('/');
+            const bool found = std::any_of(parts.begin(), parts.end(), [&](const QString& part) {
+                return labels.contains(part.trimmed().toLower().remove(marks));
+            });
+            if (!found) continue;
+            if (const QString behind = cell.section(':', 1).trimmed(); !behind.isEmpty()) return behind;
+            for (qsizetype next = k + 1; next < lines[i].cells.size(); ++next)
+                if (const QString value = lines[i].cells[next].trimmed(); !value.isEmpty()) return value;
+        }
+    return {};
+}
+
+// The labels of EN 10168 in words, English and German.
+QString supplierIn(const std::vector<CsvRow>& lines, size_t header) {
+    return labelled(lines, header,
+                    {"supplier", "lieferant", "works", "mill", "manufacturer", "hersteller", "herstellerwerk", "a01"});
+}
+
+void readHead(Certificate& certificate, const std::vector<CsvRow>& lines, size_t header) {
+    certificate.supplier = supplierIn(lines, header);
+    certificate.supplier =
+        labelled(lines, header,
+                 {"supplier", "lieferant", "works", "mill", "manufacturer", "hersteller", "herstellerwerk", "a01"});
+    certificate.number =
+        labelled(lines, header, {"certificate no", "certificate number", "zeugnis-nr", "zeugnisnummer", "a03"});
+    certificate.date = labelled(lines, header, {"date", "datum"});
+}
+
+Certificate readTable(const Table& table, size_t header, CertificateColumns columns, const ColumnChoices& choices) {
+    Certificate certificate;
+    certificate.file = table.name;
+    certificate.columns = columns.names;
+    certificate.taken_for = columns.taken_for;
+    certificate.units = columns.units;
+    readHead(certificate, table.lines, header);
+    for (size_t i = 0; i < table.lines.size(); ++i) {
+        const CsvRow& line = table.lines[i];
+        if (line.isBlank()) continue;
+        const QString what = i < header ? "text" : i == header ? "header" : otherKind(line.cells, columns, choices);
+        // A repeated header may be another one: the columns that are shown keep the units of their own.
+        if (columns.names == certificate.columns) certificate.units = columns.units;
+        if (what.isEmpty())
+            certificate.rows.push_back(readRow(line, columns, table.name, table.comma_is_usual));
+        else
+            certificate.others.push_back({line.line, what, line.cells.join(' ').simplified()});
+    }
+    holdConflicts(certificate.rows);
+    return certificate;
+}
+
 }  // namespace
 
 QString findingText(const CellFinding& finding) {
@@ -292,43 +386,46 @@ std::vector<CellFinding> Certificate::findings() const {
     return all;
 }
 
-Result<Certificate> readCertificateText(const QByteArray& bytes, const QString& name) {
-    const QString text = decodeText(bytes);
-    std::vector<CsvRow> lines;
-    std::optional<CertificateColumns> columns;
-    size_t header = 0;
-    QChar separator;
-    for (const QChar candidate : {QChar(';'), QChar(','), QChar('\t')}) {
-        separator = candidate;
-        lines = parseCsv(text, separator);
-        for (header = 0; header < lines.size() && !columns; ++header) columns = columnsOf(lines[header].cells);
-        if (columns) break;
-    }
-    if (!columns)
-        return Error{Fault::input,
-                     "no header row found: a heat column (heat, cast, Schmelze) and at least three elements are needed",
-                     {},
-                     {name.toStdString()}};
-    Certificate certificate;
-    certificate.file = name;
-    certificate.columns = columns->names;
-    certificate.taken_for = columns->taken_for;
-    for (size_t i = 0; i < lines.size(); ++i) {
-        if (lines[i].isBlank()) continue;
-        const QString what = i + 1 < header ? "text" : i + 1 == header ? "header" : otherKind(lines[i].cells, *columns);
-        if (what.isEmpty())
-            certificate.rows.push_back(readRow(lines[i], *columns, name, separator != ','));
-        else
-            certificate.others.push_back({lines[i].line, what, lines[i].cells.join(' ').simplified()});
-    }
-    holdConflicts(certificate.rows);
-    return certificate;
+Result<Certificate> readCertificateText(const QByteArray& bytes, const QString& name, const ColumnChoices& choices) {
+    const Result<std::vector<Table>> tables = tablesOf(bytes, name);
+    if (!tables) return tables.error();
+    for (const Table& table : tables.value())
+        for (size_t header = 0; header < table.lines.size(); ++header)
+            if (std::optional<CertificateColumns> columns = columnsOf(table.lines[header].cells, choices))
+                return readTable(table, header, std::move(*columns), choices);
+    return Error{Fault::input,
+                 "no header row found: a heat column (heat, cast, Schmelze) and at least three elements are needed",
+                 {},
+                 {name.toStdString()}};
 }
 
-Result<Certificate> readCertificate(const QString& path) {
+Result<Certificate> readCertificate(const QString& path, const ColumnChoices& choices) {
     const Result<QByteArray> bytes = readFile(path);
     if (!bytes) return bytes.error();
-    return readCertificateText(bytes.value(), QFileInfo(path).fileName());
+    return readCertificateText(bytes.value(), QFileInfo(path).fileName(), choices);
+}
+
+QString certificateSupplier(const QByteArray& bytes, const QString& name) {
+    constexpr size_t kLongestHead = 40;  // lines; a table's own cells are no head
+    const Result<std::vector<Table>> tables = tablesOf(bytes, name);
+    if (!tables) return {};
+    for (const Table& table : tables.value())
+        if (const QString found = supplierIn(table.lines, std::min(table.lines.size(), kLongestHead)); !found.isEmpty())
+            return found;
+    return {};
+}
+
+Result<std::vector<CsvRow>> certificateCells(const QByteArray& bytes, const QString& name) {
+    const Result<std::vector<Table>> tables = tablesOf(bytes, name);
+    if (!tables) return tables.error();
+    const auto widest = [](const Table& table) {
+        qsizetype most = 0;
+        for (const CsvRow& line : table.lines) most = std::max(most, line.cells.size());
+        return most;
+    };
+    const auto best = std::max_element(tables.value().begin(), tables.value().end(),
+                                       [&](const Table& a, const Table& b) { return widest(a) < widest(b); });
+    return best == tables.value().end() ? std::vector<CsvRow>() : best->lines;
 }
 
 }  // namespace soak

@@ -18,20 +18,10 @@ const QStringList& elements() {
 
 QString elementOf(const QString& name) {
     static const std::map<QString, QString> other = {{"cb", "Nb"}, {"n2", "N"}, {"o2", "O"}, {"h2", "H"}};
+    if (name.size() > 2) return {};
     if (const auto found = other.find(name.toLower()); found != other.end()) return found->second;
     const qsizetype at = elements().indexOf(name.left(1).toUpper() + name.mid(1).toLower());
     return at < 0 ? QString() : elements()[at];
-}
-
-std::optional<AmountUnit> unitOf(QString text) {
-    static const QRegularExpression brackets(R"([\[\]()\s])");
-    text = text.remove(brackets).replace(',', '.').toLower();
-    if (text == "%" || text == "wt%" || text == "wt.%" || text == "mass%" || text == "gew.-%")
-        return AmountUnit::percent;
-    if (text == "ppm") return AmountUnit::ppm;
-    static const QRegularExpression thousandth(R"(^(x|\x{00D7})0\.001%$)");
-    if (thousandth.match(text).hasMatch()) return AmountUnit::thousandth;
-    return {};
 }
 
 /// "Nb/Cb" -> Nb; "Al ges." -> Al; "N ppm" -> N in ppm. Soluble aluminium is not the total and stays out.
@@ -43,7 +33,7 @@ QString takeElement(const QString& header, AmountUnit& unit) {
     if (!other.isEmpty() && elementOf(other) != element) return {};
     static const QStringList total = {"", "ges.", "ges", "tot", "tot.", "total"};
     if (total.contains(rest.toLower())) return element;
-    const std::optional<AmountUnit> written = unitOf(rest);
+    const std::optional<AmountUnit> written = amountUnitOf(rest);
     if (!written) return {};
     unit = *written;
     return element;
@@ -56,6 +46,19 @@ QString meaningOf(const QString& header) {
         {"heat no", "heat"},
         {"heat number", "heat"},
         {"cast", "heat"},
+        {"cast no", "heat"},
+        {"heat-no", "heat"},
+        {"melt", "heat"},
+        {"melt no", "heat"},
+        {"b07", "heat"},
+        {"schmelzen-nr", "heat"},
+        {"schmelze-nr", "heat"},
+        {"chargen-nr", "heat"},
+        {"ch.-nr", "heat"},
+        {"charge nr", "heat"},
+        {"b02", "grade"},
+        {"b01", "form"},
+        {"werkstoff-nr", "grade"},
         {"schmelze", "heat"},
         {"schmelze nr", "heat"},
         {"charge", "heat"},
@@ -109,20 +112,73 @@ int CertificateColumns::elementCount() const {
     return count;
 }
 
-std::optional<CertificateColumns> columnsOf(const QStringList& header) {
+std::optional<CertificateColumns> columnsOf(const QStringList& header, const ColumnChoices& choices) {
     CertificateColumns columns;
     columns.names = header;
+    bool any_chosen = false;
     for (const QString& name : header) {
         AmountUnit unit = AmountUnit::percent;
         QString meaning = takeElement(name, unit);
         if (meaning.isEmpty()) meaning = meaningOf(name);
+        const auto choice = choices.find(name.trimmed());
+        const bool chosen = choice != choices.end();
+        if (chosen) meaning = choice->second.taken_for;
+        if (chosen) unit = choice->second.unit.value_or(unit);
+        any_chosen = any_chosen || (chosen && !meaning.isEmpty());
         // The first column of a meaning is the one; a second is kept out and shows so in `taken_for`.
         if (columns.taken_for.contains(meaning)) meaning.clear();
         columns.taken_for << meaning;
         columns.units.push_back(unit);
+        columns.unit_is_chosen.push_back(chosen && choice->second.unit);
     }
-    if (columns.indexOf("heat") < 0 || columns.elementCount() < 3) return {};
+    if (columns.indexOf("heat") < 0 || columns.elementCount() < (any_chosen ? 1 : 3)) return {};
     return columns;
+}
+
+const QStringList& columnMeanings() {
+    static const QStringList all =
+        QStringList{"heat", "grade", "form", "section", "route", "kind"} + elements() +
+        QStringList{QString::fromStdString(kOthersEach), QString::fromStdString(kOthersTotal)};
+    return all;
+}
+
+std::optional<AmountUnit> amountUnitOf(const QString& written) {
+    static const QRegularExpression brackets(R"([\[\]()\s])");
+    QString text = QString(written).remove(brackets).replace(',', '.').toLower();
+    if (text == "%" || text == "wt%" || text == "wt.%" || text == "mass%" || text == "gew.-%")
+        return AmountUnit::percent;
+    if (text == "ppm") return AmountUnit::ppm;
+    static const QRegularExpression thousandth(R"(^(x|\x{00D7})?0\.001%$)");
+    if (thousandth.match(text).hasMatch()) return AmountUnit::thousandth;
+    return {};
+}
+
+QString amountUnitText(AmountUnit unit) {
+    switch (unit) {
+        case AmountUnit::percent:
+            return "%";
+        case AmountUnit::thousandth:
+            return "0.001 %";
+        case AmountUnit::ppm:
+            return "ppm";
+    }
+    return {};
+}
+
+std::optional<ColumnChoice> columnChoiceOf(const QString& text) {
+    const QString word = text.trimmed().section(' ', 0, 0), rest = text.trimmed().section(' ', 1).trimmed();
+    if (word.isEmpty()) return ColumnChoice{};
+    if (columnMeanings().contains(text.trimmed())) return ColumnChoice{text.trimmed(), {}};
+    const QString element = elementOf(word), meaning = element.isEmpty() ? word.toLower() : element;
+    if (!columnMeanings().contains(meaning)) return {};
+    if (rest.isEmpty()) return ColumnChoice{meaning, {}};
+    const std::optional<AmountUnit> unit = amountUnitOf(rest);
+    if (!unit || element.isEmpty()) return {};
+    return ColumnChoice{meaning, unit};
+}
+
+QString columnChoiceText(const ColumnChoice& choice) {
+    return choice.unit ? choice.taken_for + " " + amountUnitText(*choice.unit) : choice.taken_for;
 }
 
 bool takeUnits(const QStringList& cells, CertificateColumns& columns) {
@@ -130,9 +186,9 @@ bool takeUnits(const QStringList& cells, CertificateColumns& columns) {
     int found = 0;
     for (qsizetype i = 0; i < cells.size() && i < columns.names.size(); ++i) {
         if (!columns.isElement(i) || cells[i].trimmed().isEmpty()) continue;
-        const std::optional<AmountUnit> unit = unitOf(cells[i]);
+        const std::optional<AmountUnit> unit = amountUnitOf(cells[i]);
         if (!unit) return false;
-        units[size_t(i)] = *unit;
+        if (!columns.unit_is_chosen[size_t(i)]) units[size_t(i)] = *unit;
         ++found;
     }
     if (found == 0) return false;

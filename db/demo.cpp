@@ -5,8 +5,9 @@
 #include <QFileInfo>
 
 #include "base/folders.h"
-#include "db/certificate.h"
+#include "db/csv.h"
 #include "db/library.h"
+#include "db/revision.h"
 #include "db/shop_file.h"
 
 namespace soak {
@@ -35,11 +36,17 @@ Result<Done> storeBay(Store& store, const QString& shop_file, const QString& hea
     if (Result<Done> done = store.storeQuenches(file.value().quenches); !done) return done;
     if (Result<Done> done = store.storeFurnaces(file.value().furnaces); !done) return done;
     if (Result<Done> done = store.storeCycles(file.value().cycles); !done) return done;
-    const Result<Certificate> delivery = readCertificate(demoFolder() + "/" + heats);
-    if (!delivery) return delivery.error();
     const Result<Shop> shop = store.shop();
     if (!shop) return shop.error();
-    const Result<int> stored = store.storeHeats(delivery.value().heats(), heats, shop.value().today);
+    const Act approval{"quality manager", shop.value().today.toString(Qt::ISODate),
+                       "the demonstration's standing cycle"};
+    for (const Cycle& cycle : file.value().cycles)
+        if (Result<Done> done = approveCycle(store, cycle.name, 1, approval); !done) return done;
+    const Result<QByteArray> delivery = readFile(demoFolder() + "/" + heats);
+    if (!delivery) return delivery.error();
+    const Result<ImportPlan> plan = planImport(store, delivery.value(), heats);
+    if (!plan) return plan.error();
+    const Result<ImportRecord> stored = store.storeImport(plan.value(), shop.value().today, "receiving bench");
     if (!stored) return stored.error();
     return Done{};
 }

@@ -1,8 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "db/heat_number.h"
 
+#include <set>
+
 namespace soak {
 namespace {
+
+constexpr qsizetype kShortestForSlips = 4;  // shorter numbers are all one slip from each other
 
 /// What remains of a number when everything that copying damages is taken away.
 QString bones(const QString& number) {
@@ -12,28 +16,57 @@ QString bones(const QString& number) {
     return bare;
 }
 
-bool oneSlip(const QString& a, const QString& b) {
-    if (a.size() != b.size() || a.size() < 4) return false;
-    QList<qsizetype> differ;
-    for (qsizetype i = 0; i < a.size(); ++i)
-        if (a[i] != b[i]) differ << i;
-    if (differ.size() == 1) return true;
-    return differ.size() == 2 && differ[1] == differ[0] + 1 && a[differ[0]] == b[differ[1]] &&
-           a[differ[1]] == b[differ[0]];
+/// The number with each place blanked in turn: two numbers that share a pattern differ in that place at most.
+QStringList patterns(const QString& bare) {
+    QStringList all;
+    for (qsizetype i = 0; i < bare.size() && bare.size() >= kShortestForSlips; ++i) {
+        all << bare;
+        all.back()[i] = QChar(0);
+    }
+    return all;
 }
 
 }  // namespace
 
-QStringList nearNumbers(const QString& number, const QStringList& known) {
-    const QString wanted = bones(number);
-    QStringList same, slip;
-    for (const QString& candidate : known) {
-        if (candidate == number) continue;
-        const QString bare = bones(candidate);
-        if (bare == wanted) same << candidate;
-        if (oneSlip(bare, wanted)) slip << candidate;
+NumberIndex::NumberIndex(const QStringList& known) : known_(known) {
+    for (qsizetype i = 0; i < known_.size(); ++i) {
+        const QString bare = bones(known_[i]);
+        by_bones_[bare].push_back(i);
+        for (const QString& pattern : patterns(bare)) by_pattern_[pattern].push_back(i);
     }
-    return same.isEmpty() ? slip : same;  // a slip of the pen is offered only when nothing closer is there
+}
+
+QStringList NumberIndex::sameBut(const QString& number) const {
+    QStringList same;
+    if (const auto found = by_bones_.find(bones(number)); found != by_bones_.end())
+        for (const qsizetype i : found->second)
+            if (known_[i] != number) same << known_[i];
+    return same;
+}
+
+QStringList NumberIndex::oneSlipFrom(const QString& number) const {
+    const QString bare = bones(number);
+    std::set<qsizetype> found;  // in the order of `known`
+    for (const QString& pattern : patterns(bare))
+        if (const auto like = by_pattern_.find(pattern); like != by_pattern_.end())
+            found.insert(like->second.begin(), like->second.end());
+    for (qsizetype i = 0; i + 1 < bare.size() && bare.size() >= kShortestForSlips; ++i) {
+        QString swapped = bare;
+        std::swap(swapped[i], swapped[i + 1]);
+        if (swapped == bare) continue;
+        if (const auto like = by_bones_.find(swapped); like != by_bones_.end())
+            found.insert(like->second.begin(), like->second.end());
+    }
+    QStringList slips;
+    for (const qsizetype i : found)
+        if (bones(known_[i]) != bare) slips << known_[i];
+    return slips;
+}
+
+QStringList nearNumbers(const QString& number, const QStringList& known) {
+    const NumberIndex index(known);
+    const QStringList same = index.sameBut(number);
+    return same.isEmpty() ? index.oneSlipFrom(number) : same;  // a slip is offered only when nothing closer is there
 }
 
 }  // namespace soak

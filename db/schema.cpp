@@ -103,6 +103,57 @@ const std::vector<QStringList>& migrations() {
                 cycle_revision, furnace, content, hash, issued_by, issued ON sheet
                 BEGIN SELECT RAISE(ABORT, 'an issued sheet cannot be changed'); END)",
         },
+        // 2: imports keep their file and can be undone; held rows; what a supplier's columns mean
+        {
+            "ALTER TABLE import ADD COLUMN supplier TEXT NOT NULL DEFAULT ''",
+            "ALTER TABLE import ADD COLUMN analyses INTEGER NOT NULL DEFAULT 0",
+            "ALTER TABLE import ADD COLUMN stored_by TEXT NOT NULL DEFAULT ''",
+            "ALTER TABLE import ADD COLUMN undone INTEGER NOT NULL DEFAULT 0",
+            "ALTER TABLE import ADD COLUMN file_hash TEXT NOT NULL DEFAULT ''",
+            // the file as it came, zlib-packed: the raw text of every cell for ever
+            "ALTER TABLE import ADD COLUMN file BLOB",
+            // an analysis or product that a later import put beside a heat; NULL: it came with the heat
+            "ALTER TABLE analysis ADD COLUMN import INTEGER REFERENCES import (id)",
+            "ALTER TABLE product ADD COLUMN import INTEGER REFERENCES import (id)",
+            // a row that a person must decide about; `analysis` is JSON, element -> {raw, wt, less_than, digit_wt}
+            R"(CREATE TABLE held_row (
+                import INTEGER NOT NULL REFERENCES import (id), line INTEGER NOT NULL, heat TEXT NOT NULL,
+                grade TEXT NOT NULL, kind TEXT NOT NULL, why TEXT NOT NULL, analysis TEXT NOT NULL,
+                PRIMARY KEY (import, line)))",
+            "CREATE INDEX held_row_heat ON held_row (heat)",
+            R"(CREATE TABLE column_choice (
+                supplier TEXT NOT NULL, header TEXT NOT NULL, choice TEXT NOT NULL, PRIMARY KEY (supplier, header)))",
+        },
+        // 3: the journal, people and their roles, the states of cycles, versions of furnaces and grades
+        {
+            R"(CREATE TABLE journal (
+                number INTEGER PRIMARY KEY, at TEXT NOT NULL, who TEXT NOT NULL, what TEXT NOT NULL,
+                which TEXT NOT NULL, action TEXT NOT NULL, why TEXT NOT NULL, detail TEXT NOT NULL, hash TEXT NOT NULL))",
+            R"(CREATE TRIGGER journal_stays BEFORE DELETE ON journal
+                BEGIN SELECT RAISE(ABORT, 'the journal is append-only'); END)",
+            R"(CREATE TRIGGER journal_content_stays BEFORE UPDATE ON journal
+                BEGIN SELECT RAISE(ABORT, 'the journal is append-only'); END)",
+            "CREATE TABLE setting (name TEXT PRIMARY KEY, value TEXT NOT NULL)",
+            R"(CREATE TABLE person (
+                name TEXT PRIMARY KEY, roles TEXT NOT NULL, active INTEGER NOT NULL, password_hash TEXT NOT NULL))",
+            R"(CREATE TABLE cycle_step (
+                cycle TEXT NOT NULL, revision INTEGER NOT NULL, position INTEGER NOT NULL, state TEXT NOT NULL,
+                customer TEXT NOT NULL, who TEXT NOT NULL, at TEXT NOT NULL, why TEXT NOT NULL,
+                PRIMARY KEY (cycle, revision, position),
+                FOREIGN KEY (cycle, revision) REFERENCES cycle (name, revision)))",
+            R"(CREATE TRIGGER cycle_step_stays BEFORE DELETE ON cycle_step
+                BEGIN SELECT RAISE(ABORT, 'what happened to a cycle stays'); END)",
+            R"(CREATE TRIGGER cycle_step_content_stays BEFORE UPDATE ON cycle_step
+                BEGIN SELECT RAISE(ABORT, 'what happened to a cycle stays'); END)",
+            // Every cycle of an earlier store was worked with: its newest revision is approved, older ones are history.
+            R"(INSERT INTO cycle_step (cycle, revision, position, state, customer, who, at, why)
+                SELECT name, revision, 1,
+                CASE WHEN revision = (SELECT max(revision) FROM cycle newer WHERE newer.name = cycle.name)
+                THEN 'approved' ELSE 'withdrawn' END,
+                '', '', '', 'in use before revisions were controlled' FROM cycle)",
+            "ALTER TABLE furnace ADD COLUMN version INTEGER NOT NULL DEFAULT 1",
+            "ALTER TABLE grade ADD COLUMN revision INTEGER NOT NULL DEFAULT 1",
+        },
     };
     return list;
 }

@@ -160,6 +160,21 @@ std::optional<Error> readList(const QJsonArray& list, const QString& what, Recor
 
 }  // namespace
 
+Result<Furnace> furnaceFrom(const QJsonObject& json) {
+    Fields fields(json, "furnace " + json["id"].toString());
+    Furnace furnace = furnaceOf(fields);
+    if (fields.error()) return *fields.error();
+    return furnace;
+}
+
+Result<Cycle> cycleFrom(const QJsonObject& json) {
+    Fields fields(json, "cycle " + json["name"].toString());
+    Cycle cycle = cycleOf(fields);
+    cycle.revision = json["revision"].toInt(1);
+    if (fields.error()) return *fields.error();
+    return cycle;
+}
+
 Result<ShopFile> readShopFile(const QString& path) {
     const Result<QByteArray> bytes = readFile(path);
     if (!bytes) return bytes.error();

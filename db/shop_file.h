@@ -1,5 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #pragma once
+#include <QJsonObject>
 #include <QString>
 #include <vector>
 
@@ -19,5 +20,9 @@ struct ShopFile {
 
 /// Fault::data for what is wrong or missing, with the place: "shop.json: furnace F1: survey".
 Result<ShopFile> readShopFile(const QString& path);
+
+/// One record as the shop file and the journal write it (db/record_json.h).
+Result<Furnace> furnaceFrom(const QJsonObject& json);
+Result<Cycle> cycleFrom(const QJsonObject& json);
 
 }  // namespace soak

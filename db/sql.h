@@ -50,6 +50,7 @@ public:
     double number(int column) const { return query_.value(column).toDouble(); }
     int integer(int column) const { return query_.value(column).toInt(); }
     std::optional<double> maybe(int column) const;
+    QByteArray bytes(int column) const { return query_.value(column).toByteArray(); }
     std::optional<Error> error() const { return error_; }
 
 private:

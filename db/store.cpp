@@ -8,6 +8,7 @@
 #include <QStorageInfo>
 #include <atomic>
 
+#include "db/network_drive.h"
 #include "db/schema.h"
 #include "db/sql.h"
 #include "db/store_error.h"
@@ -17,13 +18,6 @@ namespace {
 
 Error refuse(const QString& path, const QString& message) {
     return Error{Fault::store, ("store " + path + ": " + message).toStdString(), {}, {}};
-}
-
-/// SQLite's write-ahead log needs all programs on one host, and locks on network drives cannot be relied on
-/// (sqlite.org/wal.html).
-bool isNetworkDrive(const QByteArray& file_system) {
-    static const QByteArrayList network = {"nfs", "nfs4", "cifs", "smb3", "smbfs", "ncpfs", "afs", "fuse.sshfs"};
-    return network.contains(file_system);
 }
 
 std::optional<Error> unfitPlace(const QString& path) {
@@ -101,7 +95,11 @@ Result<Store> Store::open(const QString& path, Access access) {
     // The version first: nothing is written, not even a setting, to a file that is not ours.
     if (Result<Done> fits = checkVersion(store.database(), path, access); !fits) return fits.error();
     if (Result<Done> set = prepareConnection(store.database(), path, access); !set) return set.error();
-    if (access == Access::write)
+    if (access == Access::read) return store;
+    // A store that is up to date is opened without a write transaction: nobody waits for the others to finish.
+    const Result<int> version = schemaVersion(store.database(), path);
+    if (!version) return version.error();
+    if (version.value() < latestSchemaVersion())
         if (Result<Done> done = migrate(store.database(), path); !done) return done.error();
     return store;
 }

@@ -7,6 +7,8 @@
 #include <vector>
 
 #include "base/result.h"
+#include "db/import.h"
+#include "db/people.h"
 #include "db/records.h"
 
 namespace soak {
@@ -43,6 +45,23 @@ public:
     /// already, or twice in the delivery.
     Result<int> storeHeats(const std::vector<Heat>& heats, const QString& source, const QDate& date);
 
+    // Imports: see db/import.h for planImport().
+    /// Stores what the plan found, all or nothing, with the file itself. Fault::cancelled when `progress` says stop;
+    /// Fault::input when another station has stored one of the new heats since the plan was made.
+    Result<ImportRecord> storeImport(const ImportPlan& plan, const QDate& date, const QString& by,
+                                     const ImportProgress& progress = {});
+    /// Takes everything back that the import stored; its record and its file stay. Fault::input when a sheet was issued
+    /// for one of its heats, or a later import added to one of them.
+    Result<ImportRecord> undoImport(int id, const Act& act = {});
+    Result<std::vector<ImportRecord>> imports() const;
+    /// The file of an import, byte by byte as it came; empty for heats that came without one.
+    Result<QByteArray> importFile(int id) const;
+    /// Rows that wait for a person's decision, of imports that were not undone.
+    Result<std::vector<HeldRow>> heldRows() const;
+    /// What this supplier's columns mean, as a person chose.
+    Result<ColumnChoices> columnChoices(const QString& supplier) const;
+    Result<Done> rememberColumns(const QString& supplier, const ColumnChoices& choices);
+
     // The shop.
     Result<Shop> shop() const;
     Result<Done> setShop(const Shop& shop);
@@ -57,7 +76,8 @@ public:
     Result<Done> storeGrades(const std::vector<Grade>& grades);
     Result<Done> storeFurnaces(const std::vector<Furnace>& furnaces);
     Result<Done> storeQuenches(const std::vector<Quench>& quenches);
-    /// A cycle name that is stored already gets the next revision; the highest revision is the standing one.
+    /// A cycle name that is stored already gets the next revision; each is a draft (db/revision.h). cycles() and
+    /// cycle() give the newest revision that is approved or frozen, or the newest draft where none is.
     Result<Done> storeCycles(const std::vector<Cycle>& cycles);
 
     // Published knowledge.
@@ -70,6 +90,7 @@ public:
 
     // Sheets. Without a number: the next number of the date's year, revision A. With the number of an issued sheet: its
     // next revision, and the earlier one is superseded. Returns the sheet as stored: number, revision, replaces, hash.
+    // Fault::input when its cycle's revision is neither approved nor frozen; a sheet that names no cycle is not asked.
     Result<Sheet> issueSheet(Sheet sheet, const QDate& date);
     Result<std::vector<Sheet>> sheets() const;
     /// The newest revision, or the one named: ("2025-0001", "A").

@@ -3,6 +3,7 @@
 #include <QFile>
 #include <QFileInfo>
 
+#include "db/journal.h"
 #include "db/sql.h"
 #include "db/store.h"
 
@@ -39,7 +40,9 @@ Result<QStringList> Store::check() const {
     const Result<std::vector<Sheet>> issued = sheets();
     if (!issued) return issued.error();
     checkSheets(issued.value(), findings);
-    return findings;
+    const Result<QStringList> chain = journalFindings(*this);
+    if (!chain) return chain.error();
+    return findings + chain.value();
 }
 
 Result<Done> Store::backup(const QString& path) const {

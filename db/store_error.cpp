@@ -7,7 +7,7 @@ namespace soak {
 namespace {
 
 // Extended codes that say more than their low byte. Source: sqlite.org/rescode.html.
-constexpr int kUnique = 2067, kPrimaryKey = 1555, kTrigger = 1811, kForeignKey = 787;
+constexpr int kWrite = 778, kUnique = 2067, kPrimaryKey = 1555, kTrigger = 1811, kForeignKey = 787;
 
 QString words(int code) {
     static const std::map<int, QString> by_code = {
@@ -24,6 +24,9 @@ QString words(int code) {
          "try again"},
         {14, "the file cannot be opened. Check its name, and the permissions of the file and of its folder"},
         {26, "the file is not a store"},
+        {kWrite,
+         "the file could not grow: the disk is full, failing, or a limit on file sizes was met. Nothing of this change "
+         "was stored and everything stored earlier is safe; make room and try again"},
         {kUnique, "this is stored already. Nothing of this change was stored"},
         {kPrimaryKey, "this is stored already. Nothing of this change was stored"},
         {kForeignKey, "it refers to something that is not in the store. Nothing of this change was stored"},

@@ -3,6 +3,7 @@
 #include <QRegularExpression>
 #include <map>
 
+#include "db/journal.h"
 #include "db/sql.h"
 #include "db/store.h"
 
@@ -110,6 +111,8 @@ Result<Done> Store::storeGrades(const std::vector<Grade>& grades) {
         transaction.at("grade " + grade.id);
         insertGrade(transaction, grade);
     }
+    transaction.at({});
+    record(transaction, {0, {}, {}, "grade", QString("%1 rows").arg(grades.size()), "stored", {}, {}, {}});
     return transaction.commit();
 }
 

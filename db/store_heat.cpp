@@ -1,18 +1,16 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 // Heats with their analyses, raw text included.
-#include <map>
+#include <QJsonDocument>
+#include <QJsonObject>
 
 #include "db/heat_number.h"
-#include "db/sql.h"
-#include "db/store.h"
+#include "db/heat_rows.h"
+#include "db/journal.h"
+#include "db/people.h"
 
 namespace soak {
 namespace {
 
-struct StoredAnalysis {
-    QString kind, source;
-    Analysis analysis;
-};
 using HeatById = std::map<int, Heat*>;
 
 /// Every analysis of the heats that `where` picks; the first of a heat is its own, the others stand beside it.
@@ -77,9 +75,11 @@ Result<std::vector<Heat>> load(const Store& store, const QString& where, const Q
     return heats;
 }
 
-void insertAnalysis(Transaction& transaction, qint64 heat, int position, const StoredAnalysis& stored) {
-    transaction.run("INSERT INTO analysis (heat, position, kind, source) VALUES (?, ?, ?, ?)",
-                    {heat, position, stored.kind, stored.source});
+/// `import`: NULL when the analysis came with its heat.
+void insertAnalysis(Transaction& transaction, qint64 heat, int position, const OtherAnalysis& stored,
+                    const QVariant& import = QVariant(QMetaType(QMetaType::LongLong))) {
+    transaction.run("INSERT INTO analysis (heat, position, kind, source, import) VALUES (?, ?, ?, ?, ?)",
+                    {heat, position, stored.kind, stored.source, import});
     const qint64 id = transaction.lastId();
     for (const auto& [element, content] : stored.analysis)
         transaction.run(
@@ -88,6 +88,8 @@ void insertAnalysis(Transaction& transaction, qint64 heat, int position, const S
             {id, QString::fromStdString(element), content.raw, nullable(content.wt), int(content.less_than),
              content.digit_wt, content.remark});
 }
+
+}  // namespace
 
 void insertHeat(Transaction& transaction, const Heat& heat, qint64 import) {
     if (heat.number.trimmed().isEmpty())
@@ -100,17 +102,50 @@ void insertHeat(Transaction& transaction, const Heat& heat, qint64 import) {
         "VALUES (?, ?, ?, ?, ?, ?, ?)",
         {heat.number, heat.grade, heat.product_form, nullable(heat.section_mm), heat.melt_route, heat.source, import});
     const qint64 id = transaction.lastId();
-    insertAnalysis(transaction, id, 0, {heat.analysis_kind, heat.source, heat.analysis});
+    insertAnalysis(transaction, id, 0, {heat.analysis_kind, heat.analysis, heat.source});
     int position = 1;
-    for (const OtherAnalysis& other : heat.other_analyses)
-        insertAnalysis(transaction, id, position++, {other.kind, other.source, other.analysis});
+    for (const OtherAnalysis& other : heat.other_analyses) insertAnalysis(transaction, id, position++, other);
     position = 0;
     for (const Product& product : heat.other_products)
         transaction.run("INSERT INTO product (heat, position, form, section_mm, source) VALUES (?, ?, ?, ?, ?)",
                         {id, position++, product.form, nullable(product.section_mm), product.source});
 }
 
-}  // namespace
+void addAnalysis(Transaction& transaction, const QString& number, const OtherAnalysis& analysis, qint64 import) {
+    const std::optional<QVariant> heat = transaction.ask("SELECT id FROM heat WHERE number = ?", {number});
+    if (!heat)
+        return transaction.fail(
+            Error{Fault::input, "this heat is not in the store any more; make the import's preview again", {}, {}});
+    const std::optional<QVariant> position =
+        transaction.ask("SELECT coalesce(max(position), 0) + 1 FROM analysis WHERE heat = ?", {*heat});
+    insertAnalysis(transaction, heat->toLongLong(), position ? position->toInt() : 1, analysis, import);
+}
+
+QByteArray analysisJson(const Analysis& analysis) {
+    QJsonObject object;
+    for (const auto& [element, content] : analysis)
+        object[QString::fromStdString(element)] =
+            QJsonObject{{"raw", content.raw},
+                        {"wt", content.wt ? QJsonValue(*content.wt) : QJsonValue()},
+                        {"less_than", content.less_than},
+                        {"digit_wt", content.digit_wt}};
+    return QJsonDocument(object).toJson(QJsonDocument::Compact);
+}
+
+Analysis analysisFrom(const QByteArray& json) {
+    Analysis analysis;
+    const QJsonObject object = QJsonDocument::fromJson(json).object();
+    for (auto at = object.begin(); at != object.end(); ++at) {
+        const QJsonObject content = at.value().toObject();
+        const QJsonValue wt = content["wt"];
+        analysis[at.key().toStdString()] = {content["raw"].toString(),
+                                            wt.isDouble() ? std::optional(wt.toDouble()) : std::nullopt,
+                                            content["less_than"].toBool(),
+                                            content["digit_wt"].toDouble(),
+                                            {}};
+    }
+    return analysis;
+}
 
 Result<std::vector<Heat>> Store::heats() const { return load(*this, {}, {}); }
 
@@ -129,6 +164,7 @@ Result<Heat> Store::heat(const QString& number) const {
 
 Result<int> Store::storeHeats(const std::vector<Heat>& heats, const QString& source, const QDate& date) {
     Transaction transaction(database(), path_, "storing a delivery");
+    permit(transaction, {}, Right::enter);
     transaction.run("INSERT INTO import (source, day, heats) VALUES (?, ?, ?)",
                     {source, date.toString(Qt::ISODate), int(heats.size())});
     const qint64 import = transaction.lastId();
@@ -136,6 +172,8 @@ Result<int> Store::storeHeats(const std::vector<Heat>& heats, const QString& sou
         transaction.at("heat " + heat.number);
         insertHeat(transaction, heat, import);
     }
+    record(transaction,
+           {0, date.toString(Qt::ISODate), {}, "import", QString::number(import), "stored", {}, source.toUtf8(), {}});
     Result<Done> done = transaction.commit();
     if (!done) return std::move(done).error();
     return int(heats.size());

@@ -3,6 +3,8 @@
 #include <QCryptographicHash>
 #include <QJsonDocument>
 
+#include "db/journal.h"
+#include "db/people.h"
 #include "db/sql.h"
 #include "db/store.h"
 
@@ -67,6 +69,25 @@ void nameNextRevision(Transaction& transaction, Sheet& sheet) {
     transaction.run("UPDATE sheet SET status = 'superseded' WHERE number = ? AND status = 'issued'", {sheet.number});
 }
 
+/// Only what a person with the right to do so approved goes to the furnace.
+void checkCycle(Transaction& transaction, const Sheet& sheet) {
+    if (sheet.cycle.isEmpty()) return;
+    const auto state =
+        transaction.ask("SELECT state FROM cycle_step WHERE cycle = ? AND revision = ? ORDER BY position DESC LIMIT 1",
+                        {sheet.cycle, sheet.cycle_revision});
+    const QString present = state ? state->toString() : "not in the store";
+    if (present == "approved" || present == "frozen") return;
+    transaction.fail(Error{Fault::input,
+                           QString("cycle %1 revision %2 is %3: a sheet is issued from an approved cycle only. A draft "
+                                   "can be printed")
+                               .arg(sheet.cycle)
+                               .arg(sheet.cycle_revision)
+                               .arg(present == "draft" ? "a draft" : present)
+                               .toStdString(),
+                           {},
+                           {}});
+}
+
 }  // namespace
 
 QString sheetHash(const QString& number, const QString& revision, const QByteArray& content) {
@@ -81,6 +102,8 @@ Result<Sheet> Store::issueSheet(Sheet sheet, const QDate& date) {
     if (!QJsonDocument::fromJson(sheet.content).isObject())
         return Error{Fault::input, "the content of a sheet must be one JSON object", {}, {}};
     Transaction transaction(database(), path_, "issuing a sheet");
+    permit(transaction, sheet.issued_by, Right::approve);
+    checkCycle(transaction, sheet);
     if (sheet.number.isEmpty())
         nameNew(transaction, sheet, date.year());
     else
@@ -92,6 +115,15 @@ Result<Sheet> Store::issueSheet(Sheet sheet, const QDate& date) {
         "INSERT INTO sheet (" + kColumns + ") VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?)",
         {sheet.number, sheet.revision, sheet.replaces, sheet.heat, sheet.cycle, sheet.cycle_revision, sheet.furnace,
          QString::fromUtf8(sheet.content), sheet.hash, sheet.issued_by, date.toString(Qt::ISODate), sheet.status});
+    record(transaction, {0,
+                         date.toString(Qt::ISODate),
+                         sheet.issued_by,
+                         "sheet",
+                         sheet.number + " " + sheet.revision,
+                         "issued",
+                         {},
+                         ("{\"hash\":\"" + sheet.hash + "\"}").toUtf8(),
+                         {}});
     Result<Done> done = transaction.commit();
     if (!done) return std::move(done).error();
     return sheet;

@@ -18,6 +18,11 @@ Result<int> helpCommand(const QStringList&) {
       --furnace NAME, --threads N
       --sheets FOLDER                           also a draft sheet of every row that fits
       --xlsx FILE                               also a workbook with live formulas, filters and charts
+  soakwright import FILE --store FILE           a mill's certificates (CSV, semicolons, XLSX) into the store
+      --preview                                 shows what would be stored and stores nothing
+      --supplier NAME, --by NAME                whose columns these are; who imports
+      --columns "HEADER=MEANING;..."            heat, grade, N ppm, or nothing to keep a column out; remembered
+      --undo N                                  takes import N back, whole
   soakwright sheet  --store FILE --heat ID --cycle NAME --furnace NAME --pdf FILE
       --setpoint C, --paper a4|letter, --issue NAME   without --issue a draft is written
       --xlsx FILE, --language CODE, --second CODE     workbook; en, de, pl, pt; two languages side by side
@@ -31,15 +36,26 @@ Result<int> helpCommand(const QStringList&) {
       --family NAME, --kind NAME                only these rows
       --write FILE                              bias and scatter of the limits, for the planner
       --baseline FILE                           the computed values, for the tests
+  soakwright cycle history NAME --store FILE    every revision: what changed, who approved it, when, why
+  soakwright cycle approve|freeze|unfreeze|withdraw NAME --store FILE --by NAME
+      --revision N, --why TEXT, --customer NAME
   soakwright store new FILE [--demo]            a new store, empty or with the demonstration shop
+  soakwright store check FILE                   pages, references, every sheet's hash, the journal's chain
+  soakwright store backup FILE COPY             a checked copy, made while others work
+  soakwright store restore COPY FILE            a sound copy becomes a new store
+  soakwright store journal FILE                 every change: who, when, why
+  soakwright store person FILE NAME --roles LIST --new-password-file FILE [--inactive]
+  soakwright store roles FILE on|off            operator, inspector, approver, administrator; then every change
+                                                needs --by NAME --password-file FILE
   soakwright help | --version
 
   LIST is C=0.05,Cr=18,Ni=10 in wt%, with commas or semicolons; Fe=bal names the balance element.
   --set NAME chooses the data set; else the balance element does.   --date 2025-04-02 is "today".
   --json prints the same answer for programs. Temperatures are in °C, differences in K.
 
-  Exit status: 0 answered; 1 triage found rows that are outside, without window or not computed, or verify found a sheet
-  that is not the current one; 2 the question is wrong (units, elements, names, temperatures); 3 anything else failed.
+  Exit status: 0 answered; 1 triage found rows that are outside, without window or not computed, import held rows back,
+  store check found something, or verify found a sheet that is not the current one; 2 the question is wrong (units,
+  elements, names, temperatures); 3 anything else failed.
 )"));
     return 0;
 }

@@ -17,7 +17,8 @@ const std::map<QString, Command> kCommands{
     {"state", cli::stateCommand},   {"sweep", cli::sweepCommand},   {"window", cli::windowCommand},
     {"triage", cli::triageCommand}, {"sheet", cli::sheetCommand},   {"store", cli::storeCommand},
     {"verify", cli::verifyCommand}, {"packet", cli::packetCommand}, {"evidence", cli::evidenceCommand},
-    {"help", cli::helpCommand},     {"--help", cli::helpCommand},   {"-h", cli::helpCommand}};
+    {"import", cli::importCommand}, {"cycle", cli::cycleCommand},   {"help", cli::helpCommand},
+    {"--help", cli::helpCommand},   {"-h", cli::helpCommand}};
 
 /// 2 for a question that makes no sense, 3 for a failure on the way.
 int statusOf(const Error& error) { return error.fault == Fault::input || error.fault == Fault::range ? 2 : 3; }

@@ -1,17 +1,17 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
-#include "arguments.h"
 #include "commands.h"
 #include "output.h"
 #include "planner/core/sheet_issue.h"
 #include "planner/core/shop_floor.h"
 #include "planner/sheet/render.h"
 #include "planner/sheet/workbook.h"
+#include "signed_in.h"
 
 namespace soak::cli {
 namespace {
 
-const QStringList kValued{"store", "heat",  "cycle",     "furnace", "pdf",    "xlsx",     "setpoint",
-                          "date",  "paper", "band-rule", "issue",   "second", "language", "templates"};
+const QStringList kValued{"store", "heat",      "cycle", "furnace", "pdf",      "xlsx",      "setpoint",     "date",
+                          "paper", "band-rule", "issue", "second",  "language", "templates", "password-file"};
 
 Result<Paper> paperIn(const Arguments& arguments) {
     const QString paper = arguments.text("paper").toLower();
@@ -70,6 +70,12 @@ Result<int> sheetCommand(const QStringList& given) {
     if (!arguments.text("band-rule").isEmpty()) shelf.value().rules.band_rule = arguments.text("band-rule");
     const auto job = jobIn(arguments, store.value());
     if (!job) return job.error();
+
+    if (!released_by.isEmpty()) {
+        Arguments who = arguments;
+        who.values["by"] = released_by;
+        if (const auto act = actOf(who, store.value()); !act) return act.error();
+    }
 
     ReportCache cache;
     const auto answer = judge(job.value(), shelf.value(), cache);

@@ -3,11 +3,11 @@
 _soakwright() {
     local word=${COMP_WORDS[COMP_CWORD]} before=${COMP_WORDS[COMP_CWORD - 1]} options=""
     if [ "$COMP_CWORD" -eq 1 ]; then
-        mapfile -t COMPREPLY < <(compgen -W "state sweep window triage sheet packet verify evidence store help --version" -- "$word")
+        mapfile -t COMPREPLY < <(compgen -W "state sweep window triage import sheet packet verify evidence cycle store help --version" -- "$word")
         return
     fi
     case $before in
-        --store | --csv | --pdf | --xlsx | --write | --baseline | --copy)
+        --store | --csv | --pdf | --xlsx | --write | --baseline | --copy | --password-file | --new-password-file)
             mapfile -t COMPREPLY < <(compgen -f -- "$word")
             return ;;
         --sheets | --templates)
@@ -29,7 +29,9 @@ _soakwright() {
         packet) options="--store --sheet --revision --pdf" ;;
         verify) options="--store --copy --json" ;;
         evidence) options="--family --kind --write --baseline --json" ;;
-        store) options="new --demo" ;;
+        import) options="--store --preview --supplier --columns --by --why --undo --date --password-file --json" ;;
+        cycle) options="history approve freeze unfreeze withdraw --store --revision --by --why --customer --date --password-file --json" ;;
+        store) options="new check backup restore journal person roles --demo --roles --by --why --date --password-file --new-password-file --inactive --json" ;;
     esac
     mapfile -t COMPREPLY < <(compgen -W "$options" -- "$word")
 }

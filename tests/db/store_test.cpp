@@ -1,5 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "db/store.h"
+#include "db/revision.h"
 
 #include <signal.h>
 #include <sys/wait.h>
@@ -127,6 +128,10 @@ TEST_CASE("a delivery is stored whole or not at all", "[store]") {
 TEST_CASE("sheets are numbered by the store, revised, and never changed", "[store]") {
     Place place;
     Store store = must(Store::create(place.path));
+    Cycle cycle;
+    cycle.name = "SA-6A";
+    must(store.storeCycles({cycle}));
+    must(approveCycle(store, "SA-6A", 1, {"quality manager", "2025-04-01", ""}));
     Sheet draft;
     draft.heat = "F2407/1";
     draft.cycle = "SA-6A";
@@ -257,6 +262,14 @@ TEST_CASE("a newer store is refused, an older one brought up to date with its da
             REQUIRE(
                 query.exec("INSERT INTO heat (number, grade, product_form, melt_route, source, import) "
                            "VALUES ('004731', '1.2379', 'bar', '', 'f line 2', 1)"));
+            for (const int revision : {1, 2})
+                REQUIRE(query.exec(QString("INSERT INTO cycle (name, revision, position, kind, setpoint_C, soak_rule, "
+                                           "soak_base_min, soak_per_25mm_min, soak_free_mm, cooling, note) VALUES "
+                                           "('H-D2', %1, 0, 'harden', %2, '', 0, 0, 0, '', '')")
+                                       .arg(revision)
+                                       .arg(1000 + revision)));
+            REQUIRE(query.exec("INSERT INTO sheet VALUES ('2025-0001', 'A', '', '004731', 'H-D2', 2, 'F4', '{}', '" +
+                               sheetHash("2025-0001", "A", "{}") + "', 'me', '2025-04-02', 'issued')"));
         }
         QSqlDatabase::removeDatabase("old");
         if (version < latestSchemaVersion())
@@ -264,6 +277,11 @@ TEST_CASE("a newer store is refused, an older one brought up to date with its da
         const Store store = must(Store::open(old.path));
         CHECK(must(schemaVersion(store.database(), old.path)) == latestSchemaVersion());
         CHECK(must(store.heat("004731")).product_form == "bar");
+        CHECK(must(store.cycle("H-D2")).setpoint_C == 1002);
+        CHECK(must(store.sheet("2025-0001")).content == "{}");
+        // What an earlier program worked with goes on: approved where states were unknown.
+        CHECK(must(cycleRevisions(store, "H-D2"))[1].state() == (version < 3 ? "approved" : "draft"));
+        CHECK(must(store.check()).isEmpty());
     }
 }
 

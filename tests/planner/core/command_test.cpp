@@ -280,3 +280,40 @@ TEST_CASE("store new refuses to write over anything") {
     CHECK(soakwright({"store", "new", file}).status != 0);
     CHECK(soakwright({"store", "old", file}).status == 2);
 }
+
+TEST_CASE("import: preview changes nothing, an import is stored and undone as one") {
+    const QTemporaryDir folder;
+    const QString store = folder.filePath("shop.soak"), mill = productFile("db/demo/cert-export.csv");
+    REQUIRE(QFile::copy(demoStore(), store));
+    const Run preview = soakwright({"import", mill, "--store", store, "--preview", "--json"});
+    REQUIRE(preview.status == 0);
+    const Json json = preview.json();
+    CHECK(json["heats"] == 15);
+    CHECK(json["analyses"] == 30);
+    CHECK(json["import"].is_null());
+    std::set<std::string> differing;
+    for (const Json& finding : json["findings"]) {
+        for (const char* field : {"heat", "row", "column", "raw", "read", "text"}) CHECK(finding.contains(field));
+        const std::string text = finding["text"];
+        if (text.find("this file") != std::string::npos && text.find("grade") == std::string::npos)
+            differing.insert(finding["heat"].get<std::string>() + " " + finding["column"].get<std::string>());
+    }
+    CHECK(differing == std::set<std::string>{"D7731 N2", "D7745 Mo", "D7745 N2", "D8820 Cr"});
+    CHECK(soakwright({"import", mill, "--store", store, "--preview", "--json"}).out == preview.out);
+
+    const Run stored = soakwright({"import", mill, "--store", store, "--json"});
+    REQUIRE(stored.status == 0);
+    const int id = stored.json()["import"];
+    const Run undone = soakwright({"import", "--undo", QString::number(id), "--store", store});
+    CHECK(undone.status == 0);
+    CHECK(undone.out.contains("is taken back"));
+    CHECK(soakwright({"import", mill, "--store", store, "--preview", "--json"}).out == preview.out);
+
+    CHECK(soakwright({"import", productFile("db/demo/heats.csv"), "--store", store, "--preview"}).status == 1);
+    CHECK(soakwright({"import", mill, "--store", store, "--columns", "N2=colour"}).status == 2);
+    CHECK(soakwright({"import", "--store", store}).status == 2);
+    // ppm said to be percent: every row adds up to far more than 100 %, and is held.
+    const Run columns = soakwright({"import", mill, "--store", store, "--preview", "--json", "--columns", "N2=N %"});
+    CHECK(columns.status == 1);
+    CHECK(columns.json()["heats"] == 0);
+}

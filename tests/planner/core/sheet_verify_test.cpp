@@ -2,6 +2,7 @@
 #include <QTemporaryDir>
 #include <catch2/catch.hpp>
 
+#include "db/revision.h"
 #include "planner/core/sheet_json.h"
 #include "planner/core/sheet_verify.h"
 
@@ -9,7 +10,17 @@ using namespace soak;
 
 namespace {
 
+/// A sheet is issued from an approved cycle only.
+void approveItsCycle(Store& store) {
+    if (store.cycle("SA-6A")) return;
+    Cycle cycle;
+    cycle.name = "SA-6A";
+    REQUIRE(store.storeCycles({cycle}));
+    REQUIRE(approveCycle(store, "SA-6A", 1, {"Q. Manager", "2025-04-01", "reviewed"}));
+}
+
 Sheet issueIn(Store& store, const QString& number = {}) {
+    approveItsCycle(store);
     Sheet sheet;
     sheet.number = number;
     sheet.heat = "F2407/1";
