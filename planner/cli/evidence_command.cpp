@@ -68,6 +68,7 @@ QString summaryText(const std::vector<EvidenceGroup>& groups) {
     for (const auto& [weight, title] :
          {std::pair{EvidenceClass::firm, "Firm rows"},
           {EvidenceClass::unsure, "Unsure or calculated rows: for the trend only"},
+          {EvidenceClass::shop, "The shop's own rows: shown apart; --weigh-own lets them count as firm"},
           {EvidenceClass::calibration, "Calibration rows: data were fitted to them, no evidence"}}) {
         if (std::none_of(groups.begin(), groups.end(), [&](const auto& group) { return group.weight == weight; }))
             continue;
@@ -83,17 +84,19 @@ QString summaryText(const std::vector<EvidenceGroup>& groups) {
 QString targetsText(const std::vector<EvidenceTarget>& targets) {
     QString text;
     for (const EvidenceTarget& target : targets) {
-        if (target.reached.count == 0) continue;
+        if (target.reached.count + target.unsure == 0) continue;
         text += "  " + elided(target.what, 50) + QString::number(target.reached.count).rightJustified(5) +
                 figure(target.reached.mean, target.unit, true).rightJustified(9) +
                 figure(target.reached.deviation, target.unit).rightJustified(9) + " / " +
-                figure(target.deviation, target.unit) +
+                figure(std::max(target.deviation, target.own_scatter), target.unit) +
                 figure(target.reached.worst, target.unit, true).rightJustified(9) + " / " +
                 figure(target.worst, target.unit) + "  " + differenceUnit(target.unit) + "  " +
                 (target.isLittle() ? "too little evidence"
                  : target.isMet()  ? "met"
                                    : "missed") +
-                (target.missed.isEmpty() ? "" : ": " + target.missed.join(" ")) + "\n";
+                (target.missed.isEmpty() ? "" : ": " + target.missed.join(" "));
+        if (target.unsure > 0) text += QString("; %1 of %2 unsure rows hit").arg(target.unsure_hits).arg(target.unsure);
+        text += "\n";
     }
     if (text.isEmpty()) return {};
     return "\nTargets on firm rows" +
@@ -172,9 +175,12 @@ Json asJson(const EvidenceTarget& target) {
                 {"mean", target.reached.count > 0 ? Json(target.reached.mean) : Json(nullptr)},
                 {"standard_deviation", target.reached.count > 1 ? Json(target.reached.deviation) : Json(nullptr)},
                 {"target_standard_deviation", target.deviation},
+                {"own_scatter", target.own_scatter},
                 {"worst", target.reached.count > 0 ? Json(target.reached.worst) : Json(nullptr)},
                 {"target_worst", target.worst},
                 {"missed", missed},
+                {"unsure_rows", target.unsure},
+                {"unsure_rows_within_twice_their_scatter", target.unsure_hits},
                 {"little_evidence", target.isLittle()},
                 {"met", target.isMet()}};
 }
@@ -196,10 +202,23 @@ QString baselineText(const std::vector<EvidenceRow>& rows) {
     return text;
 }
 
+Result<Done> addOwnRows(const Arguments& arguments, std::vector<EvidenceRow>& rows) {
+    const QString own = arguments.text("own");
+    if (own.isEmpty() && arguments.has("weigh-own"))
+        return Error{Fault::input, "--weigh-own needs the shop's rows: name their table with --own FILE", {}, {}};
+    if (own.isEmpty()) return Done{};
+    if (!arguments.text("baseline").isEmpty())
+        return Error{Fault::input, "--baseline records published rows only: leave out --own", {}, {}};
+    auto read = readShopEvidence(own, arguments.has("weigh-own"));
+    if (!read) return std::move(read).error();
+    for (EvidenceRow& row : read.value()) rows.push_back(std::move(row));
+    return Done{};
+}
+
 }  // namespace
 
 Result<int> evidenceCommand(const QStringList& given) {
-    const auto read = readArguments(given, {"family", "kind", "write", "baseline"}, {"json"});
+    const auto read = readArguments(given, {"family", "kind", "write", "baseline", "own"}, {"json", "weigh-own"});
     if (!read) return read.error();
     const Arguments& arguments = read.value();
     const QString family = arguments.text("family"), kind = arguments.text("kind");
@@ -209,6 +228,7 @@ Result<int> evidenceCommand(const QStringList& given) {
 
     auto rows = readEvidence();
     if (!rows) return std::move(rows).error();
+    if (auto done = addOwnRows(arguments, rows.value()); !done) return std::move(done).error();
     std::vector<EvidenceRow> chosen;
     for (const EvidenceRow& row : rows.value())
         if ((family.isEmpty() || row.family == family) && (kind.isEmpty() || row.kind == kind || row.quantity == kind))

@@ -36,6 +36,7 @@ Result<int> helpCommand(const QStringList&) {
       --family NAME, --kind NAME                only these rows
       --write FILE                              bias and scatter of the limits, for the planner
       --baseline FILE                           the computed values, for the tests
+      --own FILE [--weigh-own]                  the shop's own measurements beside them; counted as firm on wish
   soakwright cycle history NAME --store FILE    every revision: what changed, who approved it, when, why
   soakwright cycle approve|freeze|unfreeze|withdraw NAME --store FILE --by NAME
       --revision N, --why TEXT, --customer NAME

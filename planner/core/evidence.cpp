@@ -27,31 +27,38 @@ QString kindOf(const QString& quantity, const QString& phase) {
     return phase == "cementite" ? "Acm" : quantity;
 }
 
+const QStringList kColumns{"row_id",  "family", "composition_wt", "quantity", "phase",  "at_C",
+                           "element", "value",  "unit",           "scatter",  "source", "note"};
+
+/// What published and own rows have in common.
+EvidenceRow rowFrom(const CsvTable& table, size_t line) {
+    const auto cell = [&](const char* column) { return table.text(line, column); };
+    EvidenceRow row;
+    row.id = cell("row_id");
+    row.family = cell("family");
+    row.composition = cell("composition_wt");
+    row.quantity = cell("quantity");
+    row.phase = cell("phase");
+    row.element = cell("element");
+    row.unit = cell("unit");
+    row.source = cell("source");
+    row.note = cell("note");
+    row.value_text = cell("value");
+    row.scatter = cell("scatter").toDouble();
+    bool is_number = false;
+    if (const double at = cell("at_C").toDouble(&is_number); is_number) row.at_C = at;
+    if (const double value = row.value_text.toDouble(&is_number); is_number) row.value = value;
+    row.kind = kindOf(row.quantity, row.phase);
+    return row;
+}
+
 Result<Done> readEquilibria(const char* file, bool calibration, std::vector<EvidenceRow>& rows) {
-    const auto table =
-        CsvTable::read(published(file), {"row_id", "family", "composition_wt", "quantity", "phase", "at_C", "element",
-                                         "value", "unit", "scatter", "how", "source", "seen", "note"});
+    const auto table = CsvTable::read(published(file), kColumns + QStringList{"how", "seen"});
     if (!table) return table.error();
     for (size_t line = 0; line < table.value().size(); ++line) {
-        const auto cell = [&](const char* column) { return table.value().text(line, column); };
-        EvidenceRow row;
-        row.id = cell("row_id");
-        row.family = cell("family");
-        row.composition = cell("composition_wt");
-        row.quantity = cell("quantity");
-        row.phase = cell("phase");
-        row.element = cell("element");
-        row.unit = cell("unit");
-        row.how = cell("how");
-        row.source = cell("source");
-        row.seen = cell("seen");
-        row.note = cell("note");
-        row.value_text = cell("value");
-        row.scatter = cell("scatter").toDouble();
-        bool is_number = false;
-        if (const double at = cell("at_C").toDouble(&is_number); is_number) row.at_C = at;
-        if (const double value = row.value_text.toDouble(&is_number); is_number) row.value = value;
-        row.kind = kindOf(row.quantity, row.phase);
+        EvidenceRow row = rowFrom(table.value(), line);
+        row.how = table.value().text(line, "how");
+        row.seen = table.value().text(line, "seen");
         const bool unsure = row.note.contains("unsure") || row.how == "calculated";
         row.weight = calibration ? EvidenceClass::calibration : unsure ? EvidenceClass::unsure : EvidenceClass::firm;
         rows.push_back(std::move(row));
@@ -96,11 +103,15 @@ QString word(EvidenceClass weight) {
             return "unsure";
         case EvidenceClass::calibration:
             return "calibration";
+        case EvidenceClass::shop:
+            return "own";
     }
     return {};
 }
 
-QString EvidenceRow::dataSet() const { return id.startsWith("lt") ? "light" : "ferrous"; }
+QString EvidenceRow::dataSet() const {
+    return id.startsWith("lt") || composition.contains("Al=bal") ? "light" : "ferrous";
+}
 
 std::optional<double> EvidenceRow::difference() const {
     if (!computed || !value) return std::nullopt;
@@ -117,6 +128,29 @@ Result<std::vector<EvidenceRow>> readEvidence() {
          {std::pair{"equilibrium_checks.csv", false}, {"light_checks.csv", false}, {"calibration_rows.csv", true}})
         if (auto done = readEquilibria(file, calibration, rows); !done) return std::move(done).error();
     if (auto done = readExamples(rows); !done) return std::move(done).error();
+    return rows;
+}
+
+Result<std::vector<EvidenceRow>> readShopEvidence(const QString& path, bool weigh_in) {
+    const auto table = CsvTable::read(path, kColumns);
+    if (!table) return table.error();
+    std::vector<EvidenceRow> rows;
+    QStringList ids;
+    for (size_t line = 0; line < table.value().size(); ++line) {
+        EvidenceRow row = rowFrom(table.value(), line);
+        if (row.id.isEmpty() || ids.contains(row.id))
+            return table.value().error(line, "row_id", "every row needs an id of its own");
+        if (!row.value) return table.value().error(line, "value", "\"" + row.value_text + "\" is no number");
+        if (row.scatter <= 0)
+            return table.value().error(line, "scatter", "state the half width that the measurement allows");
+        if (row.source.isEmpty())
+            return table.value().error(line, "source", "state who measured it, how and when: report number, date");
+        ids << row.id;
+        row.how = "measured";
+        row.seen = "own";
+        row.weight = weigh_in ? EvidenceClass::firm : EvidenceClass::shop;
+        rows.push_back(std::move(row));
+    }
     return rows;
 }
 

@@ -10,9 +10,10 @@ namespace soak {
 
 /// How much a published row counts for.
 enum class EvidenceClass {
-    firm,        ///< measured, compiled or standard, and sure of its source
-    unsure,      ///< marked unsure, or itself calculated: shown apart, carries no target
-    calibration  ///< data were fitted to it: never evidence
+    firm,         ///< measured, compiled or standard, and sure of its source
+    unsure,       ///< marked unsure, or itself calculated: shown apart, carries no target
+    calibration,  ///< data were fitted to it: never evidence
+    shop          ///< the shop's own measurement: shown apart until the shop lets it weigh in, then firm
 };
 QString word(EvidenceClass weight);
 
@@ -30,7 +31,8 @@ struct EvidenceRow {
     QString reason;                  ///< why there is no computed value, in words
     QString remark;                  ///< what was done on the way: "B left out of the equilibrium"
 
-    QString dataSet() const;                   ///< folder of thermo/data that computes it, by the id's first letters
+    QString dataSet()
+        const;  ///< folder of thermo/data that computes it, by the id's first letters or the balance element
     std::optional<double> difference() const;  ///< computed minus published
     bool isJudged() const;                     ///< computed, and the row states its scatter
     bool isHit() const;                        ///< judged, and within twice the row's scatter
@@ -38,6 +40,11 @@ struct EvidenceRow {
 
 /// All rows of tests/published, not yet computed. Fault::data or Fault::store names the file.
 Result<std::vector<EvidenceRow>> readEvidence();
+
+/// A shop's own rows: a table with the columns row_id, family, composition_wt, quantity, phase, at_C, element, value,
+/// unit, scatter, source, note (those of tests/published; how and seen are not asked for). `weigh_in` lets them count
+/// as firm. Fault::data names the line of a row that lacks a number, its scatter or its source, or repeats an id.
+Result<std::vector<EvidenceRow>> readShopEvidence(const QString& path, bool weigh_in);
 
 /// Fills `computed` or `reason` of every row, on all cores; the outcome does not depend on their number. Fails only
 /// when a data set cannot be loaded.

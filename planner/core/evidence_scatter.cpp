@@ -103,7 +103,8 @@ Result<QString> modelScatterTable(const std::vector<EvidenceRow>& rows) {
     std::map<QString, std::map<QString, Rows>> by_limit;  // limit -> grade family -> rows
     for (const EvidenceRow& row : rows) {
         const auto families = map.value().find(row.family);  // binaries speak for the data, not for a grade family
-        if (row.weight == EvidenceClass::calibration || !row.difference() || families == map.value().end()) continue;
+        const bool speaks = row.weight == EvidenceClass::firm || row.weight == EvidenceClass::unsure;
+        if (!speaks || !row.difference() || families == map.value().end()) continue;
         if (families->second.contains(kEvery)) continue;
         const QStringList speaks_for = families->second + QStringList{everyFamilyOf(row.dataSet())};
         for (const QString& limit : limitsOf(row))
