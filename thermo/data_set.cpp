@@ -271,7 +271,7 @@ private:
         std::sort(files.begin(), files.end());
         std::set<std::string> present;
         for (const auto& file : files) {
-            present.insert(file.stem().string());
+            const size_t first = data_.parameters.size();
             auto table = open(file);
             if (!table) return std::move(table).error();
             const auto system = texts(std::as_const(table.value())["system"]);
@@ -283,9 +283,16 @@ private:
                                       std::as_const(table.value())["sources"]);
                 if (!done) return std::move(done).error();
             }
+            const auto own = data_.parameters.begin() + static_cast<std::ptrdiff_t>(first);
+            if (std::any_of(own, data_.parameters.end(), isAssessed)) present.insert(file.stem().string());
         }
         listGaps(present);
         return Done{};
+    }
+
+    /// More than a guess: published, or fitted to measurements. A binary of guesses alone counts as not assessed.
+    static bool isAssessed(const Parameter& p) {
+        return !p.estimated || !p.fitted_to.empty() || p.source.rfind("estimate", 0) != 0;
     }
 
     Result<Done> parameter(const fs::path& file, size_t number, const toml::node_view<const toml::node>& entry,

@@ -5,6 +5,7 @@
 #include "commands.h"
 #include "data_choice.h"
 #include "output.h"
+#include "planner/core/coverage.h"
 
 namespace soak::cli {
 namespace {
@@ -12,7 +13,16 @@ namespace {
 struct Question {
     Alloy alloy;
     DataSetFacts set;
+    QStringList extrapolated;  ///< what the set answers beyond what was assessed
 };
+
+/// Nothing is extrapolated in silence.
+Result<QStringList> extrapolatedIn(const Chemistry& chemistry, const DataSetFacts& set) {
+    const auto book = loadFamilyBook();
+    if (!book) return book.error();
+    const auto use = book.value().uses.find(QString::fromStdString(set.name));
+    return extrapolations(chemistry.wt, set, use == book.value().uses.end() ? SetUse{} : use->second);
+}
 
 Result<Question> questionFrom(const Arguments& arguments) {
     const auto text = arguments.required("wt");
@@ -25,17 +35,24 @@ Result<Question> questionFrom(const Arguments& arguments) {
     if (!chemistry) return chemistry.error();
     auto alloy = Alloy::make(data.value(), chemistry.value(), phaseChoice(arguments));
     if (!alloy) return std::move(alloy).error();
-    return Question{std::move(alloy).value(), facts(*data.value())};
+    auto extrapolated = extrapolatedIn(chemistry.value(), facts(*data.value()));
+    if (!extrapolated) return std::move(extrapolated).error();
+    return Question{std::move(alloy).value(), facts(*data.value()), std::move(extrapolated).value()};
 }
 
 /// Which data stand behind an answer.
-Json setAsJson(Json answer, const DataSetFacts& set) {
-    answer["data_set"] = set.name;
-    answer["data_version"] = set.version;
+Json setAsJson(Json answer, const Question& question) {
+    answer["data_set"] = question.set.name;
+    answer["data_version"] = question.set.version;
+    answer["extrapolated"] = Json::array();
+    for (const QString& what : question.extrapolated) answer["extrapolated"].push_back(what.toStdString());
     return answer;
 }
-QString setAsText(const DataSetFacts& set) {
-    return QString("Data %1 %2\n").arg(QString::fromStdString(set.name), QString::fromStdString(set.version));
+QString setAsText(const Question& question) {
+    QString text = QString("Data %1 %2\n")
+                       .arg(QString::fromStdString(question.set.name), QString::fromStdString(question.set.version));
+    for (const QString& what : question.extrapolated) text += "Extrapolated: " + what + "\n";
+    return text;
 }
 
 }  // namespace
@@ -49,9 +66,8 @@ Result<int> stateCommand(const QStringList& given) {
     if (!question) return std::move(question).error();
     const auto state = question.value().alloy.stateAt(kelvin(at_C.value()));
     if (!state) return state.error();
-    const DataSetFacts& set = question.value().set;
-    arguments.value().has("json") ? print(setAsJson(asJson(state.value()), set))
-                                  : print(asText(state.value()) + setAsText(set));
+    arguments.value().has("json") ? print(setAsJson(asJson(state.value()), question.value()))
+                                  : print(asText(state.value()) + setAsText(question.value()));
     return 0;
 }
 
@@ -69,13 +85,13 @@ Result<int> sweepCommand(const QStringList& given) {
 
     if (!arguments.value().has("json")) {
         for (const Event& event : sweep.value().events) print(asText(event));
-        print(setAsText(question.value().set));
+        print(setAsText(question.value()));
         return 0;
     }
     Json json{{"states", Json::array()}, {"events", Json::array()}};
     for (const State& state : sweep.value().states) json["states"].push_back(asJson(state));
     for (const Event& event : sweep.value().events) json["events"].push_back(asJson(event));
-    print(setAsJson(std::move(json), question.value().set));
+    print(setAsJson(std::move(json), question.value()));
     return 0;
 }
 

@@ -9,6 +9,16 @@
 namespace soak {
 namespace {
 
+constexpr double kPairMatters_wt2 = 4;  // common practice: below it the pair is a trace beside the others
+
+/// The loader names a pair in either order of its elements.
+bool lacksBinary(const DataSetFacts& set, const std::string& a, const std::string& b) {
+    const auto named = [&](const std::string& pair) {
+        return std::find(set.gaps.begin(), set.gaps.end(), "no assessed binary " + pair) != set.gaps.end();
+    };
+    return named(a + "-" + b) || named(b + "-" + a);
+}
+
 QString amountOf(const std::string& element, const Content& content) {
     return QString::fromStdString(element) + " " + (content.raw.isEmpty() ? QString::number(*content.wt) : content.raw);
 }
@@ -37,6 +47,21 @@ QString whyNotCovered(const Analysis& analysis, const DataSetFacts& set, const S
                 .arg(amountOf(element, content), named, QString::number(most_wt));
     }
     return {};
+}
+
+QStringList extrapolations(const std::map<std::string, double>& wt, const DataSetFacts& set, const SetUse& use) {
+    QStringList all;
+    for (const auto& [element, most] : use.most_wt)
+        if (const auto at = wt.find(element); at != wt.end() && at->second > most)
+            all << QString("%1 %2 %: the data set \"%3\" holds up to %4 %")
+                       .arg(QString::fromStdString(element), QString::number(at->second),
+                            QString::fromStdString(set.name), QString::number(most));
+    for (auto a = wt.begin(); a != wt.end(); ++a)
+        for (auto b = std::next(a); b != wt.end(); ++b)
+            if (a->second * b->second >= kPairMatters_wt2 && lacksBinary(set, a->first, b->first))
+                all << QString("%1 with %2: no assessed binary, their interaction is an estimate")
+                           .arg(QString::fromStdString(a->first), QString::fromStdString(b->first));
+    return all;
 }
 
 }  // namespace soak

@@ -151,6 +151,13 @@ WindowAnswer notComputed(WindowAnswer answer, const QString& why) {
     return answer;
 }
 
+/// Where the data extrapolate, a computed limit is less sure than its family's published cases show.
+void widen(Limit& limit, double by_K) {
+    if (limit.model_K <= 0) return;  // set, not computed
+    limit.model_K = std::hypot(limit.model_K, by_K);
+    limit.uncertainty_K = std::hypot(limit.uncertainty_K, by_K);
+}
+
 /// Sweep and limits; what fails on the way is said in the limits themselves.
 void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, const Family& family, const Grade* row,
                    ReportCache& cache) {
@@ -179,8 +186,11 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
         else
             context.report_missing = QString::fromStdString(report.error().text());
     }
+    const QStringList extrapolated = extrapolations(chemistry.wt, known, use);
+    for (const QString& what : extrapolated) answer.remarks << "extrapolated, uncertainty widened: " + what;
     for (const CycleLimit& limit : limits)
         for (Limit& made : evaluate(limit, context)) {
+            if (!extrapolated.isEmpty()) widen(made, shelf.book.least_scatter_K);
             if (row && made.temperature_C && !made.set) made.drivers = driversOf(made, job.heat.analysis, *row);
             (made.side == Side::floor ? answer.floors : answer.ceilings).push_back(std::move(made));
         }
