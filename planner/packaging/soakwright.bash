@@ -7,7 +7,7 @@ _soakwright() {
         return
     fi
     case $before in
-        --store | --csv | --pdf | --xlsx | --write | --baseline | --copy | --password-file | --new-password-file)
+        --store | --csv | --pdf | --xlsx | --write | --baseline | --own | --copy | --password-file | --new-password-file)
             mapfile -t COMPREPLY < <(compgen -f -- "$word")
             return ;;
         --sheets | --templates)
@@ -28,7 +28,7 @@ _soakwright() {
         sheet) options="--store --heat --cycle --furnace --pdf --xlsx --setpoint --paper --issue --language --second --record --templates --band-rule --date --json" ;;
         packet) options="--store --sheet --revision --pdf" ;;
         verify) options="--store --copy --json" ;;
-        evidence) options="--family --kind --write --baseline --json" ;;
+        evidence) options="--family --kind --write --baseline --own --weigh-own --json" ;;
         import) options="--store --preview --supplier --columns --by --why --undo --date --password-file --json" ;;
         cycle) options="history approve freeze unfreeze withdraw --store --revision --by --why --customer --date --password-file --json" ;;
         store) options="new check backup restore journal person roles --demo --roles --by --why --date --password-file --new-password-file --inactive --json" ;;
