@@ -10,7 +10,7 @@ namespace soak::cli {
 // Error is printed by main and gives status 2 for what was asked wrongly, 3 for everything else.
 
 /// Triage: at least one row is outside, has no window or is not computed; import: a row is held; store check: a
-/// finding; verify: the sheet is not the current one.
+/// finding; verify: the sheet is not the current one; run, look-back and load: something does not fit.
 inline constexpr int kNeedsDecision = 1;
 
 Result<int> stateCommand(const QStringList& given);
@@ -23,6 +23,11 @@ Result<int> packetCommand(const QStringList& given);
 Result<int> verifyCommand(const QStringList& given);
 Result<int> evidenceCommand(const QStringList& given);
 Result<int> cycleCommand(const QStringList& given);
+Result<int> gradeCommand(const QStringList& given);
+Result<int> loadCommand(const QStringList& given);
+Result<int> runCommand(const QStringList& given);
+Result<int> lookBackCommand(const QStringList& given);
+Result<int> trendCommand(const QStringList& given);
 Result<int> storeCommand(const QStringList& given);
 Result<int> helpCommand(const QStringList& given);
 

@@ -32,6 +32,15 @@ Result<int> helpCommand(const QStringList&) {
       --revision LETTER
   soakwright verify CODE --store FILE           does the sheet with this code still hold?
       --copy FILE                               a bay's copy, asked when the store cannot be
+  soakwright grade  --grade ID --cycle NAME --furnace NAME --store FILE
+      --samples N, --fresh N, --seed N, --threads N   share of the grade's range that the cycle serves; tightened limits
+  soakwright load   --heats LIST --furnace NAME --store FILE      the fewest charges for heats HEAT:CYCLE
+  soakwright run    --heat ID --cycle NAME --furnace NAME --store FILE --log FILE
+      --soak-start T, --soak-end T, --door T, --under T           the run record against the window
+  soakwright look-back --furnace NAME --error K --store FILE      loads since the last good check, by real margin
+      --known K, --since DATE, --until DATE
+  soakwright trend  --store FILE DATE:SUPPLIER:FILE ...           margins and contents in time, with control limits
+      --elements LIST
   soakwright evidence                           published values beside the computed ones, bias and scatter
       --family NAME, --kind NAME                only these rows
       --write FILE                              bias and scatter of the limits, for the planner
@@ -55,7 +64,8 @@ Result<int> helpCommand(const QStringList&) {
   --json prints the same answer for programs. Temperatures are in °C, differences in K.
 
   Exit status: 0 answered; 1 triage found rows that are outside, without window or not computed, import held rows back,
-  store check found something, or verify found a sheet that is not the current one; 2 the question is wrong (units,
+  store check found something, or verify found a sheet that is not the current one, or run, look-back
+  or load that something does not fit; 2 the question is wrong (units,
   elements, names, temperatures); 3 anything else failed.
 )"));
     return 0;

@@ -13,12 +13,25 @@ namespace {
 using namespace soak;
 using Command = Result<int> (*)(const QStringList&);
 
-const std::map<QString, Command> kCommands{
-    {"state", cli::stateCommand},   {"sweep", cli::sweepCommand},   {"window", cli::windowCommand},
-    {"triage", cli::triageCommand}, {"sheet", cli::sheetCommand},   {"store", cli::storeCommand},
-    {"verify", cli::verifyCommand}, {"packet", cli::packetCommand}, {"evidence", cli::evidenceCommand},
-    {"import", cli::importCommand}, {"cycle", cli::cycleCommand},   {"help", cli::helpCommand},
-    {"--help", cli::helpCommand},   {"-h", cli::helpCommand}};
+const std::map<QString, Command> kCommands{{"state", cli::stateCommand},
+                                           {"sweep", cli::sweepCommand},
+                                           {"window", cli::windowCommand},
+                                           {"triage", cli::triageCommand},
+                                           {"sheet", cli::sheetCommand},
+                                           {"store", cli::storeCommand},
+                                           {"verify", cli::verifyCommand},
+                                           {"packet", cli::packetCommand},
+                                           {"evidence", cli::evidenceCommand},
+                                           {"grade", cli::gradeCommand},
+                                           {"load", cli::loadCommand},
+                                           {"run", cli::runCommand},
+                                           {"look-back", cli::lookBackCommand},
+                                           {"trend", cli::trendCommand},
+                                           {"import", cli::importCommand},
+                                           {"cycle", cli::cycleCommand},
+                                           {"help", cli::helpCommand},
+                                           {"--help", cli::helpCommand},
+                                           {"-h", cli::helpCommand}};
 
 /// 2 for a question that makes no sense, 3 for a failure on the way.
 int statusOf(const Error& error) { return error.fault == Fault::input || error.fault == Fault::range ? 2 : 3; }

@@ -2,18 +2,22 @@
 #include <cstdio>
 
 #include "base/units.h"
-#include "output.h"
+#include "json_parts.h"
 
 namespace soak::cli {
 namespace {
 
-Json optional(const std::optional<double>& value) { return value ? Json(*value) : Json(nullptr); }
-std::string plain(const QString& text) { return text.toStdString(); }
-
-Json list(const QStringList& texts) {
-    Json all = Json::array();
-    for (const QString& text : texts) all.push_back(plain(text));
-    return all;
+Json opinions(const std::vector<Opinion>& all) {
+    Json array = Json::array();
+    for (const Opinion& one : all)
+        array.push_back({{"quantity", plain(one.quantity)},
+                         {"name", plain(one.name)},
+                         {"temperature_C", one.value},
+                         {"scatter_K", optional(one.scatter)},
+                         {"in_range", one.in_range},
+                         {"outside", plain(one.outside)},
+                         {"source", plain(one.source)}});
+    return array;
 }
 
 Json asJson(const Limit& limit) {
@@ -32,6 +36,8 @@ Json asJson(const Limit& limit) {
             {"laboratory_K", limit.laboratory_K},
             {"model_K", limit.model_K},
             {"K_per_wt", Json(limit.K_per_wt)},
+            {"opinions", opinions(limit.opinions)},
+            {"disagreement", plain(limit.disagreement)},
             {"drivers", plain(limit.drivers)},
             {"remark", plain(limit.remark)}};
 }
@@ -55,6 +61,56 @@ Json asJson(const Band& band) {
             {"parts", parts},
             {"may_issue", band.may_issue},
             {"warnings", list(band.warnings)}};
+}
+
+Json asJson(const CoolingAnswer& cooling) {
+    Json crossings = Json::array();
+    for (const Crossing& one : cooling.crossings)
+        crossings.push_back({{"what", plain(one.what)},
+                             {"low_C", one.low_C},
+                             {"high_C", one.high_C},
+                             {"computed", one.computed},
+                             {"because", plain(one.because)},
+                             {"source", plain(one.source)}});
+    return {{"phase", plain(cooling.phase)},
+            {"begins_C", optional(cooling.begins_C)},
+            {"budget_s", optional(cooling.budget_s)},
+            {"set_s", optional(cooling.set_s)},
+            {"allowed_s", optional(cooling.allowed_s)},
+            {"transfer_s", optional(cooling.transfer_s)},
+            {"quench", plain(cooling.quench)},
+            {"too_slow", cooling.too_slow},
+            {"needed_K_per_s", optional(cooling.needed_K_per_s)},
+            {"sentence", plain(cooling.sentence)},
+            {"basis", plain(cooling.basis)},
+            {"crossings", crossings}};
+}
+
+Json asJson(const SoakTime& soak) {
+    return {{"heat_up_min", optional(soak.heat_up_min)},       {"dissolve_min", optional(soak.dissolve_min)},
+            {"homogenise_min", optional(soak.homogenise_min)}, {"rule_min", optional(soak.rule_min)},
+            {"rule_too_short", soak.rule_too_short},           {"lines", list(soak.lines)}};
+}
+
+Json outlook(const std::vector<QuenchOutlook>& all) {
+    Json array = Json::array();
+    for (const QuenchOutlook& one : all)
+        array.push_back({{"from_C", one.from_C},
+                         {"carbon_wt", one.carbon_wt},
+                         {"Ms_C", optional(one.Ms_C)},
+                         {"Mf_C", optional(one.Mf_C)},
+                         {"Bs_C", optional(one.Bs_C)},
+                         {"retained_vol", one.retained_vol},
+                         {"hardness_HRC", optional(one.hardness_HRC)},
+                         {"basis", plain(one.basis)}});
+    return array;
+}
+
+Json remedies(const std::vector<Remedy>& all) {
+    Json array = Json::array();
+    for (const Remedy& one : all)
+        array.push_back({{"what", plain(one.what)}, {"text", plain(one.text)}, {"margin_K", optional(one.margin_K)}});
+    return array;
 }
 
 Json asJson(const GradeCheck& check) {
@@ -116,6 +172,11 @@ Json asJson(const WindowAnswer& answer) {
             {"verdict", plain(word(answer.verdict))},
             {"margin_K", optional(answer.margin_K)},
             {"grade_check", asJson(answer.grade_check)},
+            {"chance_inside", optional(answer.chance_inside)},
+            {"cooling", asJson(answer.cooling)},
+            {"soak", asJson(answer.soak)},
+            {"quench_outlook", outlook(answer.quench_outlook)},
+            {"remedies", remedies(answer.remedies)},
             {"reason", plain(answer.reason)},
             {"left_out", list(answer.left_out)},
             {"remarks", list(answer.remarks)},

@@ -25,14 +25,74 @@ QString line(const QString& left, const QString& right) { return "  " + left.lef
 QString limitLine(const Limit& limit) {
     const QString temperature = limit.temperature_C ? shownTemperature(limit) : QString("-");
     QString text = "  " + temperature.rightJustified(8) + "  " + limit.cause;
-    if (limit.temperature_C && !limit.set) text += ", uncertainty " + withUnit(limit.uncertainty_K, "K");
+    if (limit.temperature_C && !limit.set)
+        text += QString(", uncertainty %1 (certificate %2, laboratory %3, model %4)")
+                    .arg(withUnit(limit.uncertainty_K, "K"), number(limit.certificate_K, 1),
+                         number(limit.laboratory_K, 1), number(limit.model_K, 0));
     if (!limit.remark.isEmpty()) text += " (" + limit.remark + ")";
+    return text + "\n";
+}
+
+/// "published: Ac1 737 °C Andrews 1965, ...; out of range: Grange 1961 (Cr 8.80 is above 2.50)"
+QString opinionLine(const Limit& limit) {
+    if (limit.opinions.empty()) return {};
+    QStringList inside, outside;
+    for (const Opinion& one : limit.opinions)
+        (one.in_range ? inside : outside)
+            << celsiusText(one.value) + " " + one.name + (one.in_range ? QString() : " (" + one.outside + ")");
+    QString text = QString(12, ' ') + "published " + limit.opinions.front().quantity + ": ";
+    text += inside.isEmpty() ? QString("none in range") : inside.join(", ");
+    if (!outside.isEmpty()) text += "; out of range: " + outside.join(", ");
     return text + "\n";
 }
 
 QString limitLines(const QString& title, const std::vector<Limit>& limits) {
     QString text = title + "\n";
-    for (const Limit& limit : limits) text += limitLine(limit);
+    for (const Limit& limit : limits) text += limitLine(limit) + opinionLine(limit);
+    return text;
+}
+
+/// The way to the quench; apart from the verdict.
+QString coolingLines(const CoolingAnswer& cooling) {
+    QStringList lines;
+    if (!cooling.sentence.isEmpty()) lines << cooling.sentence;
+    if (!cooling.basis.isEmpty()) lines << "(" + cooling.basis + ")";
+    for (const Crossing& one : cooling.crossings)
+        lines << QString("cross quickly: %1, %2 to %3: %4 (%5)")
+                     .arg(one.what, celsiusText(std::ceil(one.high_C)), celsiusText(std::floor(one.low_C)), one.because,
+                          one.source);
+    if (cooling.needed_K_per_s)
+        lines << QString("slowest sound cooling through the sensitising range: %1, to a factor of two")
+                     .arg(*cooling.needed_K_per_s < 0.1 ? withUnit(60 * *cooling.needed_K_per_s, "K/min", 1)
+                                                        : withUnit(*cooling.needed_K_per_s, "K/s", 1));
+    return lines.isEmpty() ? QString() : "Cooling, not part of the window:\n  " + lines.join("\n  ") + "\n";
+}
+
+QString outlookLines(const std::vector<QuenchOutlook>& all) {
+    if (all.empty()) return {};
+    QString text = "After the quench (rules of thumb; " + all.front().basis + "):\n";
+    for (const QuenchOutlook& one : all) {
+        QStringList parts{"C in the austenite " + withUnit(one.carbon_wt, "%", 2)};
+        if (one.Ms_C) parts << "Ms " + celsiusText(*one.Ms_C);
+        if (one.Mf_C) parts << "Mf " + celsiusText(*one.Mf_C);
+        if (one.Bs_C) parts << "Bs " + celsiusText(*one.Bs_C);
+        parts << "austenite left " + withUnit(one.retained_vol, "vol%");
+        if (one.hardness_HRC) parts << "martensite " + withUnit(*one.hardness_HRC, "HRC");
+        text += "  from " + celsiusText(one.from_C) + ": " + parts.join(", ") + "\n";
+    }
+    return text;
+}
+
+QString remedyLines(const WindowAnswer& answer) {
+    QString text;
+    if (answer.chance_inside && *answer.chance_inside < 1 && *answer.chance_inside > 0)
+        text += QString("Chance that all of the metal is inside: %1 (certificate, laboratory and model)\n")
+                    .arg(withUnit(std::floor(100 * *answer.chance_inside), "%"));
+    if (answer.remedies.empty()) return text;
+    text += "What would move it:\n";
+    for (const Remedy& one : answer.remedies)
+        text += "  " + one.what + ": " + one.text +
+                (one.margin_K ? " (margin " + withUnit(std::floor(*one.margin_K), "K") + ")" : QString()) + "\n";
     return text;
 }
 
@@ -87,6 +147,10 @@ QString asText(const WindowAnswer& answer) {
     }
     if (!answer.floors.empty()) text += limitLines("Must be above", answer.floors);
     if (!answer.ceilings.empty()) text += limitLines("Must be below", answer.ceilings);
+    text += remedyLines(answer);
+    text += outlookLines(answer.quench_outlook);
+    text += bulleted("Time, beside the shop's rule:", answer.soak.lines);
+    text += coolingLines(answer.cooling);
     text += gradeText(answer.grade_check);
     text += bulleted("Before a sheet may be issued:", answer.band.warnings);
     text += bulleted("Kept, not in the equilibrium:", answer.left_out);

@@ -34,7 +34,7 @@ Result<Shelf> shelfFor(const Arguments& arguments, const Store* store) {
 Result<Cycle> cycleOfFamily(const Family& family, const QString& kind_name) {
     const FamilyKind* kind = kind_name.isEmpty() ? &family.kinds.front() : family.find(kind_name);
     if (!kind) {
-        Cycle unknown;  // the answer will say that this kind is not judged
+        Cycle unknown;  // the answer will say that no limits are known for this kind
         unknown.kind = kind_name;
         return unknown;
     }
@@ -97,7 +97,7 @@ Result<Job> jobFor(const Arguments& arguments, Shelf& shelf, const Store* store)
         const Family* family = shelf.book.find(name);
         if (!family)
             return refuse(name.isEmpty() ? QString("--family, --grade or --cycle is needed")
-                                         : "the family \"" + name + "\" is not judged yet; name a --cycle");
+                                         : "the family \"" + name + "\" is not in data/families.toml; name a --cycle");
         auto cycle = cycleOfFamily(*family, arguments.text("kind"));
         if (!cycle) return std::move(cycle).error();
         job.cycle = std::move(cycle).value();

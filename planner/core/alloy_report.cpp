@@ -38,6 +38,22 @@ Result<State> AlloyReport::stateAt(double temperature_K) {
     return alloy_->stateAt(temperature_K);
 }
 
+Result<FreezingPath> AlloyReport::freezing(const FreezingChoice& choice) {
+    if (frozen_) return *frozen_;
+    if (!alloy_) return noEngine();
+    constexpr double kAbove_K = 120;  // the sweep may end below the liquidus
+    auto path = freeze(*alloy_, sweep_.states.back().temperature_K + kAbove_K, choice);
+    if (path) frozen_ = path.value();
+    return path;
+}
+
+Result<Alloy> AlloyReport::changed(const std::string& element, double wt) const {
+    if (!alloy_) return noEngine();
+    Chemistry moved = alloy_->chemistry();
+    moved.wt[element] = wt;
+    return alloy_->changed(moved);
+}
+
 Result<Event> AlloyReport::solved(const std::string& what, double value, double from_K, double to_K,
                                   const std::function<Result<Event>()>& solve) {
     if (!alloy_) return noEngine();

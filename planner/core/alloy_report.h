@@ -5,6 +5,7 @@
 #include <memory>
 
 #include "planner/core/window.h"
+#include "thermo/scheil.h"
 
 namespace soak {
 
@@ -27,6 +28,10 @@ public:
     Result<Event> crossingOfFraction(const std::string& label, double fraction, double from_K, double to_K);
     Result<Event> crossingOfContent(const std::string& element, double content_wt, double from_K, double to_K);
     Result<State> stateAt(double temperature_K);
+    /// How the melt freezes between dendrites, computed once.
+    Result<FreezingPath> freezing(const FreezingChoice& choice);
+    /// The same alloy with another content of one element. Fault::data when only a stored sweep is at hand.
+    Result<Alloy> changed(const std::string& element, double wt) const;
 
 private:
     Result<Event> solved(const std::string& what, double value, double from_K, double to_K,
@@ -38,6 +43,7 @@ private:
     std::unique_ptr<Alloy> alloy_;
     Sweep sweep_;
     std::map<std::string, Event> solved_;
+    std::optional<FreezingPath> frozen_;
 };
 
 }  // namespace soak

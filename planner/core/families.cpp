@@ -1,52 +1,12 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "planner/core/families.h"
 
-#include <toml++/toml.h>
 #include <algorithm>
 
-#include "base/folders.h"
+#include "planner/core/tables.h"
 
 namespace soak {
 namespace {
-
-Error bad(const std::string& file, const std::string& message) {
-    return {Fault::data, "planner/core/data/" + file + ": " + message, {}, {}};
-}
-
-Result<toml::table> readTable(const std::string& file) {
-    const auto path = productPath("planner/core/data") / file;
-    try {
-        return toml::parse_file(path.string());
-    } catch (const toml::parse_error& error) {
-        return bad(file, std::string(error.description()) + " (line " + std::to_string(error.source().begin.line) +
-                             "); restore the file from the distribution");
-    }
-}
-
-QString text(const toml::table& row, std::string_view key) {
-    return QString::fromStdString(row[key].value_or(std::string()));
-}
-std::optional<double> numberIn(const toml::table& row, std::string_view key) { return row[key].value<double>(); }
-
-QStringList texts(const toml::table& row, std::string_view key) {
-    QStringList all;
-    if (const auto* list = row[key].as_array())
-        for (const auto& item : *list) all << QString::fromStdString(item.value_or(std::string()));
-    return all;
-}
-std::vector<std::string> words(const toml::table& row, std::string_view key) {
-    std::vector<std::string> all;
-    for (const QString& word : texts(row, key)) all.push_back(word.toStdString());
-    return all;
-}
-
-/// Calls `use` for every table in the array `key`.
-template <class Use>
-void forEachRow(const toml::table& table, std::string_view key, Use use) {
-    if (const auto* rows = table[key].as_array())
-        for (const auto& row : *rows)
-            if (const auto* fields = row.as_table()) use(*fields);
-}
 
 CycleLimit limitFrom(const toml::table& row) {
     CycleLimit limit;
@@ -64,6 +24,7 @@ FamilyKind kindFrom(const toml::table& row) {
     FamilyKind kind;
     kind.name = text(row, "name");
     kind.reference_C = numberIn(row, "reference_C").value_or(0);
+    kind.basis = text(row, "basis");
     forEachRow(row, "limits", [&](const toml::table& limit) { kind.limits.push_back(limitFrom(limit)); });
     return kind;
 }
@@ -86,7 +47,74 @@ Result<Done> readFamilies(FamilyBook& book) {
         }
     });
     if (!wrong.empty())
-        return bad("families.toml", "family \"" + wrong + "\" is there twice, or lacks data_set or kind");
+        return badTable("families.toml", "family \"" + wrong + "\" is there twice, or lacks data_set or kind");
+    return Done{};
+}
+
+/// Treatments that several families share. A family's own rows in families.toml stand first.
+Result<Done> readTreatmentKinds(FamilyBook& book) {
+    const auto table = readTable("treatments.toml");
+    if (!table) return table.error();
+    QString wrong;
+    forEachRow(table.value(), "treatment", [&](const toml::table& row) {
+        const FamilyKind kind = kindFrom(row);
+        for (const QString& name : texts(row, "families")) {
+            const auto family =
+                std::find_if(book.families.begin(), book.families.end(), [&](Family& one) { return one.name == name; });
+            if (family == book.families.end())
+                wrong = "family \"" + name + "\" of treatment " + kind.name + " is not in families.toml";
+            else if (family->find(kind.name))
+                wrong = "treatment " + kind.name + " is there twice for family \"" + name + "\"";
+            else
+                family->kinds.push_back(kind);
+        }
+    });
+    if (!wrong.isEmpty()) return badTable("treatments.toml", wrong.toStdString());
+    return Done{};
+}
+
+Result<Done> readParticles(FamilyBook& book) {
+    const auto table = readTable("particles.toml");
+    if (!table) return table.error();
+    forEachRow(table.value(), "particle", [&](const toml::table& row) {
+        book.particles.push_back(
+            {text(row, "phase"), texts(row, "families"), numberIn(row, "radius_um").value_or(0), text(row, "source")});
+    });
+    for (const ParticleSize& one : book.particles)
+        if (one.radius_um <= 0)
+            return badTable("particles.toml", "radius_um of " + one.phase.toStdString() + " must be above 0");
+    return Done{};
+}
+
+Result<Done> readSegregation(FamilyBook& book) {
+    const auto table = readTable("segregation.toml");
+    if (!table) return table.error();
+    for (const auto& [set, row] : table.value())
+        if (const auto* fields = row.as_table()) {
+            Segregation& one = book.segregation[QString::fromStdString(std::string(set.str()))];
+            one.freezing.fast = words(*fields, "fast");
+            one.freezing.last_liquid = numberIn(*fields, "last_liquid").value_or(one.freezing.last_liquid);
+            one.source = text(*fields, "source");
+        }
+    return Done{};
+}
+
+Result<Done> readBooks(FamilyBook& book) {
+    auto relations = loadRelations();
+    if (!relations) return std::move(relations).error();
+    book.relations = std::move(relations).value();
+    auto cooling = loadCoolingRules();
+    if (!cooling) return std::move(cooling).error();
+    book.cooling = std::move(cooling).value();
+    auto kinetics = loadKinetics();
+    if (!kinetics) return std::move(kinetics).error();
+    book.kinetics = std::move(kinetics).value();
+    auto tempering = loadTemperingCurves();
+    if (!tempering) return std::move(tempering).error();
+    book.tempering = std::move(tempering).value();
+    auto salvage = loadSalvageRules();
+    if (!salvage) return std::move(salvage).error();
+    book.salvage = std::move(salvage).value();
     return Done{};
 }
 
@@ -95,7 +123,7 @@ Result<Done> readScatter(FamilyBook& book) {
     if (!table) return table.error();
     book.unknown_scatter_K = numberIn(table.value(), "unknown_scatter_K").value_or(0);
     book.least_scatter_K = numberIn(table.value(), "least_scatter_K").value_or(0);
-    if (book.unknown_scatter_K <= 0) return bad("model_scatter.toml", "unknown_scatter_K must be above 0");
+    if (book.unknown_scatter_K <= 0) return badTable("model_scatter.toml", "unknown_scatter_K must be above 0");
     forEachRow(table.value(), "row", [&](const toml::table& row) {
         ModelScatter scatter;
         scatter.mean = numberIn(row, "mean").value_or(0);
@@ -115,7 +143,7 @@ Result<Done> readLaboratory(FamilyBook& book) {
         if (const auto* fields = row.as_table())
             book.laboratory[std::string(element.str())] = {numberIn(*fields, "floor_wt").value_or(0),
                                                            numberIn(*fields, "relative").value_or(0)};
-    if (!book.laboratory.count("*")) return bad("laboratory.toml", "the row \"*\" is missing");
+    if (!book.laboratory.count("*")) return badTable("laboratory.toml", "the row \"*\" is missing");
     return Done{};
 }
 
@@ -136,8 +164,8 @@ Result<Done> readUses(FamilyBook& book) {
                 amounts(*fields, "left_out_wt"), amounts(*fields, "most_wt")};
     for (const auto& [set, use] : book.uses)
         if (use.from_C >= use.to_C || !use.left_out_wt.count("*"))
-            return bad("sweep.toml",
-                       "\"" + set.toStdString() + "\" lacks from_C below to_C, or left_out_wt with \"*\"");
+            return badTable("sweep.toml",
+                            "\"" + set.toStdString() + "\" lacks from_C below to_C, or left_out_wt with \"*\"");
     return Done{};
 }
 
@@ -175,9 +203,17 @@ double FamilyBook::laboratory_wt(const std::string& element, double content_wt) 
     return row.floor_wt + row.relative * content_wt;
 }
 
+const ParticleSize* FamilyBook::particleOf(const QString& family, const QString& phase) const {
+    for (const QString& wanted : {family, QString("*")})
+        for (const ParticleSize& one : particles)
+            if (one.phase == phase && one.families.contains(wanted)) return &one;
+    return nullptr;
+}
+
 Result<FamilyBook> loadFamilyBook() {
     FamilyBook book;
-    for (const auto read : {readFamilies, readScatter, readLaboratory, readUses})
+    for (const auto read : {readFamilies, readTreatmentKinds, readScatter, readLaboratory, readUses, readParticles,
+                            readSegregation, readBooks})
         if (auto done = read(book); !done) return std::move(done).error();
     return book;
 }

@@ -7,15 +7,23 @@
 #include <vector>
 
 #include "db/records.h"
+#include "planner/core/cooling_rules.h"
+#include "planner/core/kinetics.h"
+#include "planner/core/relations.h"
+#include "planner/core/salvage.h"
+#include "planner/core/tempering.h"
 #include "thermo/alloy.h"
+#include "thermo/scheil.h"
 
 namespace soak {
 
-/// A treatment that is judged for a family, and what to look for when no cycle is given.
+/// A treatment of a family, and what to look for when no cycle is given; rows of data/families.toml (the usual ones)
+/// and data/treatments.toml (all others).
 struct FamilyKind {
     QString name;            ///< cycle kind: "solution-anneal"
     double reference_C = 0;  ///< usual in the trade, to start looking from
     std::vector<CycleLimit> limits;
+    QString basis;  ///< the published ranges that the limits rest on, or empty
 };
 
 /// What the planner knows of one family of grades; rows of data/families.toml.
@@ -50,6 +58,20 @@ struct SetUse {
     std::map<std::string, double> most_wt;      ///< most that the set is meant for
 };
 
+/// Radius of the particles that hold grains, for a family and a label; rows of data/particles.toml.
+struct ParticleSize {
+    QString phase;
+    QStringList families;  ///< "*": every other
+    double radius_um = 0;
+    QString source;
+};
+
+/// How the melts of a data set freeze; rows of data/segregation.toml.
+struct Segregation {
+    FreezingChoice freezing;
+    QString source;
+};
+
 /// The planner's own tables, read once and shared between threads.
 struct FamilyBook {
     std::vector<Family> families;
@@ -58,11 +80,20 @@ struct FamilyBook {
     double unknown_scatter_K = 0, least_scatter_K = 0;    ///< without a row; with fewer than 5
     std::map<std::string, LaboratoryScatter> laboratory;  ///< by element; "*" = every other
     std::map<QString, SetUse> uses;                       ///< by data set
+    std::map<QString, Segregation> segregation;           ///< by data set
+    RelationBook relations;                               ///< published relations, as second opinions
+    CoolingRules cooling;                                 ///< what may form on the way to the quench
+    KineticBook kinetics;                                 ///< diffusion, conduction, heat transfer
+    std::vector<TemperingCurve> tempering;                ///< published hardness after tempering and ageing
+    std::vector<SalvageRule> salvage;                     ///< what may be done with a load that went wrong
+    std::vector<ParticleSize> particles;                  ///< sizes of particles that hold grains
 
     const Family* find(const QString& name) const;
     /// The row for this family, kind and phase, the nearest general one, or a wide scatter that says so.
     ModelScatter scatterOf(const QString& family, const QString& kind, const QString& phase) const;
     double laboratory_wt(const std::string& element, double content_wt) const;
+    /// nullptr when no size is known for the label.
+    const ParticleSize* particleOf(const QString& family, const QString& phase) const;
 };
 /// The word under which model_scatter.toml keeps what holds for every family of a data set: "* ferrous".
 QString everyFamilyOf(const QString& data_set);

@@ -1,103 +1,27 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 #include "planner/core/grade_rule.h"
 
-#include <cmath>
-#include <map>
 #include <optional>
+
+#include "planner/core/formula.h"
 
 namespace soak {
 namespace {
 
-using Amounts = std::map<QString, double>;
-
-/// Reads and evaluates + - * / and brackets over numbers and element symbols, in one pass.
-class Expression {
-public:
-    Expression(const QString& text, const Amounts& amounts) : text_(text), amounts_(amounts) {}
-
-    /// Nothing when the text is no expression, or on a division by zero.
-    std::optional<double> value() {
-        const double result = sum();
-        skipBlanks();
-        ok_ = ok_ && at_ == text_.size();
-        return ok_ && !zero_divisor_ ? std::optional(result) : std::nullopt;
-    }
-    bool readable() const { return ok_; }
-    const QStringList& symbols() const { return symbols_; }
-
-private:
-    void skipBlanks() {
-        while (at_ < text_.size() && text_[at_].isSpace()) ++at_;
-    }
-    bool take(QChar wanted) {
-        skipBlanks();
-        if (at_ >= text_.size() || text_[at_] != wanted) return false;
-        ++at_;
-        return true;
-    }
-    double sum() {
-        double total = product();
-        for (;;) {
-            if (take('+'))
-                total += product();
-            else if (take('-'))
-                total -= product();
-            else
-                return total;
-        }
-    }
-    double product() {
-        double total = factor();
-        for (;;) {
-            if (take('*')) {
-                total *= factor();
-            } else if (take('/')) {
-                const double divisor = factor();
-                zero_divisor_ = zero_divisor_ || divisor == 0;
-                total /= divisor;
-            } else {
-                return total;
-            }
-        }
-    }
-    double factor() {
-        if (take('(')) {
-            const double inside = sum();
-            ok_ = ok_ && take(')');
-            return inside;
-        }
-        const qsizetype start = at_;
-        while (at_ < text_.size() && (text_[at_].isLetterOrNumber() || text_[at_] == '.')) ++at_;
-        const QString word = text_.mid(start, at_ - start);
-        if (!word.isEmpty() && word[0].isLetter()) return amountOf(word);
-        bool is_number = false;
-        const double number = word.toDouble(&is_number);
-        ok_ = ok_ && is_number;
-        return number;
-    }
-    double amountOf(const QString& symbol) {
-        if (!symbols_.contains(symbol)) symbols_ << symbol;
-        const auto known = amounts_.find(symbol);
-        return known == amounts_.end() ? 0 : known->second;
-    }
-
-    QString text_;
-    const Amounts& amounts_;
-    QStringList symbols_;
-    qsizetype at_ = 0;
-    bool ok_ = true, zero_divisor_ = false;
-};
+using Amounts = Formula::Values;
 
 struct Parts {
-    QString left, right;
+    Formula left, right;
     bool at_least = true;
 };
+/// Nothing when the rule has no comparison or a side cannot be read.
 std::optional<Parts> split(const QString& rule) {
     for (const bool at_least : {true, false}) {
         const qsizetype at = rule.indexOf(at_least ? ">=" : "<=");
         if (at < 0) continue;
         const QString named = rule.left(at);
-        return Parts{named.mid(named.indexOf('=') + 1).trimmed(), rule.mid(at + 2).trimmed(), at_least};
+        const auto left = Formula::parse(named.mid(named.indexOf('=') + 1)), right = Formula::parse(rule.mid(at + 2));
+        return left && right ? std::optional(Parts{left.value(), right.value(), at_least}) : std::nullopt;
     }
     return std::nullopt;
 }
@@ -106,7 +30,7 @@ bool holds(const Parts& parts, double left, double right) { return parts.at_leas
 
 /// Whether the rule holds for these amounts; nothing when a side cannot be evaluated.
 std::optional<bool> verdictFor(const Parts& parts, const Amounts& amounts) {
-    const auto left = Expression(parts.left, amounts).value(), right = Expression(parts.right, amounts).value();
+    const auto left = parts.left.value(amounts), right = parts.right.value(amounts);
     if (!left || !right) return std::nullopt;
     // 1e-9: sums of printed decimals are not exact in binary
     return holds(parts, *left + (parts.at_least ? 1e-9 : -1e-9), *right);
@@ -118,7 +42,10 @@ RuleOutcome applyRule(const QString& rule, const Analysis& analysis) {
     using Answer = RuleOutcome::Answer;
     RuleOutcome outcome;
     const auto parts = split(rule);
-    if (!parts) return outcome;
+    if (!parts) {
+        outcome.text = rule + ": cannot be read";
+        return outcome;
+    }
 
     Amounts amounts;
     QStringList censored;
@@ -127,9 +54,8 @@ RuleOutcome applyRule(const QString& rule, const Analysis& analysis) {
             amounts[QString::fromStdString(symbol)] = *content.wt;
             if (content.less_than) censored << QString::fromStdString(symbol);
         }
-    Expression left(parts->left, amounts), right(parts->right, amounts);
-    const auto left_value = left.value(), right_value = right.value();
-    outcome.elements = left.symbols() + right.symbols();
+    const auto left_value = parts->left.value(amounts), right_value = parts->right.value(amounts);
+    outcome.elements = parts->left.names() + parts->right.names();
     outcome.elements.removeDuplicates();
     for (const QString& symbol : outcome.elements)
         if (!amounts.count(symbol)) outcome.missing << symbol;
@@ -139,9 +65,8 @@ RuleOutcome applyRule(const QString& rule, const Analysis& analysis) {
         return outcome;
     }
     if (!left_value || !right_value) {
-        const bool readable = left.readable() && right.readable();
-        if (readable) outcome.answer = Answer::cannot_say;
-        outcome.text = rule + (readable ? ": cannot be evaluated, division by zero" : ": cannot be read");
+        outcome.answer = Answer::cannot_say;
+        outcome.text = rule + ": cannot be evaluated, division by zero";
         return outcome;
     }
     outcome.left = *left_value;

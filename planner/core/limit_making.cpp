@@ -12,7 +12,8 @@ namespace {
 
 QString marginText(double margin_K, Side side) {
     if (margin_K == 0) return {};
-    return QString(side == Side::floor ? " + " : " \u2212 ") + withUnit(margin_K, "K");
+    const bool up = (side == Side::floor) == (margin_K > 0);
+    return QString(up ? " + " : " \u2212 ") + withUnit(std::abs(margin_K), "K");
 }
 
 /// A "less than" value was computed at its bound. Where 0 is the unsafe end, the exact derivative carries the limit
@@ -30,12 +31,6 @@ double censoredShift_K(Side side, const std::map<std::string, double>& K_per_wt,
     return shift;
 }
 
-/// Certificate rounding: the last digit hides a uniform half either way. A "less than" hides everything below its
-/// bound.
-double rounding_wt(const Content& content) {
-    return (content.less_than ? content.wt.value_or(0) : content.digit_wt) / std::sqrt(12.0);
-}
-
 /// The model's part, K. The mean difference counts where it lies to the unsafe side: a floor computed too low, a
 /// ceiling too high, an amount that must be reached computed too large, one that must not be passed too small.
 double model_K(const ModelScatter& scatter, Side side, const Slope& slope) {
@@ -49,6 +44,12 @@ double model_K(const ModelScatter& scatter, Side side, const Slope& slope) {
 }
 
 }  // namespace
+
+/// Certificate rounding: the last digit hides a uniform half either way. A "less than" hides everything below its
+/// bound.
+double rounding_wt(const Content& content) {
+    return (content.less_than ? content.wt.value_or(0) : content.digit_wt) / std::sqrt(12.0);
+}
 
 Limit blankLimit(const CycleLimit& limit, Side side, const QString& cause) {
     Limit made;
@@ -99,6 +100,24 @@ Limit limitAt(Limit limit, const Event& event, const LimitContext& context, cons
         limit.remark = scatter.rows == 0 ? QString("little evidence: ") + scatter.source
                                          : QString("little evidence: %1 published values").arg(scatter.rows);
     return limit;
+}
+
+// Ac on slow heating lies 5 to 30 K above equilibrium, more in alloy steels (common practice): that much is no
+// disagreement.
+constexpr double kHeatingShift_K = 30;
+
+void addOpinions(Limit& limit, const Event& event, const QString& quantity, const LimitContext& context) {
+    limit.opinions = context.book->relations.opinionsOn(quantity, context.family, amountsOf(*context.analysis));
+    const auto median_C = medianOf(limit.opinions);
+    if (!median_C) return;
+    const double computed_C = celsius(event.temperature_K), apart_K = *median_C - computed_C;
+    double scatter_K = 15;  // where the papers state none: usual for such regressions
+    for (const Opinion& one : limit.opinions)
+        if (one.in_range && one.scatter) scatter_K = std::max(scatter_K, *one.scatter);
+    const double explained_K = 2 * std::hypot(limit.uncertainty_K, scatter_K) + (apart_K > 0 ? kHeatingShift_K : 0);
+    if (std::abs(apart_K) <= explained_K) return;
+    limit.disagreement = QString("published relations put %1 at %2, the equilibrium at %3: have it measured")
+                             .arg(quantity, celsiusText(*median_C), celsiusText(computed_C));
 }
 
 std::size_t solidStates(const Sweep& sweep) {

@@ -23,6 +23,12 @@ struct Slope {
 /// The limit at an event: margin, the unsafe end of "less than" values, and the three parts of its uncertainty.
 Limit limitAt(Limit limit, const Event& event, const LimitContext& context, const Slope& slope = {});
 
+/// Published relations on the temperature of `event` beside a limit, and where they disagree with it.
+void addOpinions(Limit& limit, const Event& event, const QString& quantity, const LimitContext& context);
+
+/// One standard deviation of a content by its rounding on the certificate, wt%.
+double rounding_wt(const Content& content);
+
 /// How many states come before the first liquid: amounts mean nothing to a furnace once the metal melts.
 std::size_t solidStates(const Sweep& sweep);
 
@@ -30,10 +36,15 @@ std::size_t solidStates(const Sweep& sweep);
 std::vector<Limit> dissolvedLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> notYetFormedLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> solidusLimit(const CycleLimit& limit, const LimitContext& context);
+std::vector<Limit> segregatedSolidusLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> firstAusteniteLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> lastFerriteLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> fractionLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> matrixContentLimit(const CycleLimit& limit, const LimitContext& context);
+std::vector<Limit> grainPinnedLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> retainedAusteniteLimit(const CycleLimit& limit, const LimitContext& context);
+std::vector<Limit> martensiteStartLimit(const CycleLimit& limit, const LimitContext& context);
+std::vector<Limit> quenchedHardnessLimit(const CycleLimit& limit, const LimitContext& context);
+std::vector<Limit> temperedHardnessLimit(const CycleLimit& limit, const LimitContext& context);
 
 }  // namespace soak

@@ -156,6 +156,59 @@ std::vector<Limit> matrixContentLimit(const CycleLimit& limit, const LimitContex
                    context);
 }
 
+std::vector<Limit> grainPinnedLimit(const CycleLimit& limit, const LimitContext& context) {
+    const Limit bare = blankLimit(limit, Side::ceiling, "grain held by " + limit.phase);
+    const ParticleSize* size = context.book->particleOf(context.family, limit.phase);
+    if (!size) return {notComputed(bare, "no particle size of " + limit.phase + " is known (data/particles.toml)")};
+    if (!limit.high || *limit.high <= 0) return {notComputed(bare, "the limit names no grain size")};
+    // Largest mean grain radius that particles of radius r and volume fraction f hold: R = 4 r / (9 f).
+    // M. Hillert, Acta Metall. 13 (1965) 227-238.
+    const double grain_radius_um = *limit.high / 2;
+    CycleLimit amount = limit;
+    amount.low = 100 * 4 * size->radius_um / (9 * grain_radius_um);
+    amount.high.reset();
+    std::vector<Limit> made;
+    for (Limit& one : fractionLimit(amount, context)) {
+        one.cause = blankLimit(limit, one.side,
+                               QString("grain of %1 held by at least %2 of %3")
+                                   .arg(withUnit(*limit.high, "µm"), withUnit(*amount.low, "vol%", 2), limit.phase))
+                        .cause;
+        // What holds the grain is there at low temperatures too, but a cycle does not ask for it there.
+        if (one.side == Side::floor && one.temperature_C) continue;
+        if (one.temperature_C) one.remark = "rule of thumb: Hillert 1965 with particles of " + size->source;
+        made.push_back(std::move(one));
+    }
+    if (made.empty()) made.push_back(notBinding(bare, "kept at every higher temperature computed"));
+    return made;
+}
+
+std::vector<Limit> martensiteStartLimit(const CycleLimit& limit, const LimitContext& context) {
+    const auto start = [](const State& state) {
+        const PhaseAmount* austenite = state.find("austenite");
+        return austenite ? martensiteStart_C(austenite->wt) : kNoHigh / 2;
+    };
+    auto made = between(limit,
+                        {start, limit.low.value_or(kNoLow), limit.high.value_or(kNoHigh), "martensite start", "°C",
+                         false, generalSolution(context.report, "martensite start", start)},
+                        context);
+    for (Limit& one : made)
+        if (one.temperature_C) one.remark = kRetainedAusteniteSource;
+    return made;
+}
+
+std::vector<Limit> quenchedHardnessLimit(const CycleLimit& limit, const LimitContext& context) {
+    const Relation& relation = context.book->relations.relations.at("HRC_MAX_A255");
+    const auto hardness = [&relation](const State& state) { return quenchedHardness_HRC(state, relation); };
+    auto made = between(limit,
+                        {hardness, limit.low.value_or(kNoLow), limit.high.value_or(kNoHigh), "hardness as quenched",
+                         "HRC", false, generalSolution(context.report, "hardness as quenched", hardness)},
+                        context);
+    for (Limit& one : made)
+        if (one.temperature_C)
+            one.remark = "rule of thumb: full martensite after " + relation.source + ", carbon of the austenite";
+    return made;
+}
+
 std::vector<Limit> retainedAusteniteLimit(const CycleLimit& limit, const LimitContext& context) {
     const auto retained = [](const State& state) { return retainedAustenite_vol(state, kQuenchedTo_C); };
     auto made = between(limit,

@@ -114,6 +114,23 @@ std::vector<Limit> solidusLimit(const CycleLimit& limit, const LimitContext& con
     return {notBinding(ceiling, "no liquid up to the highest temperature computed, which stands for the solidus")};
 }
 
+std::vector<Limit> segregatedSolidusLimit(const CycleLimit& limit, const LimitContext& context) {
+    const Limit ceiling = blankLimit(limit, Side::ceiling, "segregated solidus");
+    const Family* family = context.book->find(context.family);
+    const auto rule = family ? context.book->segregation.find(family->data_set) : context.book->segregation.end();
+    if (rule == context.book->segregation.end())
+        return {notComputed(ceiling, "data/segregation.toml has no row for this data set")};
+    const auto path = context.report->freezing(rule->second.freezing);
+    if (!path) return {notComputed(ceiling, QString::fromStdString(path.error().text()))};
+    Event event;
+    event.label = "liquid";
+    event.temperature_K = path.value().end_K;
+    event.K_per_wt = path.value().K_per_wt;
+    Limit made = limitAt(ceiling, event, context);
+    made.remark = "as cast, before any homogenising; " + rule->second.source;
+    return {made};
+}
+
 std::vector<Limit> firstAusteniteLimit(const CycleLimit& limit, const LimitContext& context) {
     const Sweep& sweep = context.report->sweep();
     const Side side = limit.kind == "above_ae1" ? Side::floor : Side::ceiling;
@@ -126,7 +143,9 @@ std::vector<Limit> firstAusteniteLimit(const CycleLimit& limit, const LimitConte
         return {notComputed(made, "austenite is stable already at the lowest temperature computed")};
     const auto first = sweep.firstAppearing("austenite");
     if (!first) return {notComputed(made, "the first austenite was not found in the sweep")};
-    return {limitAt(made, *first, context)};
+    Limit at = limitAt(made, *first, context);
+    addOpinions(at, *first, "Ac1", context);
+    return {at};
 }
 
 std::vector<Limit> lastFerriteLimit(const CycleLimit& limit, const LimitContext& context) {
@@ -138,7 +157,9 @@ std::vector<Limit> lastFerriteLimit(const CycleLimit& limit, const LimitContext&
     if (gaps.front().first == 0) return {notBinding(floor, "no ferrite even at the lowest temperature computed")};
     const Event* event = eventBetween(sweep, labels, EventKind::vanishes, gaps.front().first - 1);
     if (!event) return {notComputed(floor, "where the last ferrite goes was not found in the sweep")};
-    return {limitAt(floor, *event, context)};
+    Limit at = limitAt(floor, *event, context);
+    addOpinions(at, *event, "Ac3", context);
+    return {at};
 }
 
 }  // namespace soak

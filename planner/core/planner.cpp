@@ -6,9 +6,15 @@
 
 #include "base/folders.h"
 #include "planner/core/band.h"
+#include "planner/core/chance.h"
+#include "planner/core/cooling.h"
 #include "planner/core/coverage.h"
 #include "planner/core/grade_check.h"
+#include "planner/core/limit_making.h"
 #include "planner/core/limits.h"
+#include "planner/core/quench_outlook.h"
+#include "planner/core/remedies.h"
+#include "planner/core/times.h"
 #include "planner/core/units_text.h"
 #include "planner/core/verdict.h"
 
@@ -115,11 +121,36 @@ QStringList publishedRanges(const Shelf& shelf, const Grade& row, const QString&
     return lines;
 }
 
-bool isComputedKind(const QString& kind) { return kind != "specification" && kind != "furnace"; }
+/// Limits of people and of tables need no equilibrium.
+bool needsPhysics(const CycleLimit& limit) {
+    static const QStringList without{"specification", "specification_if", "furnace", "quench_delay",
+                                     "tempered_hardness"};
+    return !without.contains(limit.kind) && !(limit.kind == "avoid" && limit.phase.isEmpty());
+}
+
+/// The shop's own soak for the governing section, minutes; nothing when its rule is words only.
+std::optional<double> soakByRule_min(const Job& job) {
+    const Cycle& cycle = job.cycle;
+    if (cycle.soak_per_25mm_min == 0)
+        return cycle.soak_base_min > 0 ? std::optional(cycle.soak_base_min) : std::nullopt;
+    if (!job.heat.section_mm) return std::nullopt;
+    const double minutes =
+        cycle.soak_base_min + cycle.soak_per_25mm_min * std::max(0.0, *job.heat.section_mm - cycle.soak_free_mm) / 25;
+    return minutes > 0 ? std::optional(minutes) : std::nullopt;
+}
+
+/// The quenches that both the cycle and the furnace name, in the cycle's order.
+std::vector<Quench> quenchesOf(const Job& job, const Shelf& shelf) {
+    std::vector<Quench> shared;
+    for (const QString& id : job.cycle.quenches)
+        for (const Quench& quench : shelf.quenches)
+            if (quench.id == id && job.furnace.quenches.contains(id)) shared.push_back(quench);
+    return shared;
+}
 
 /// Every limit of the cycle, and the furnace's own range where the cycle does not speak of it.
-std::vector<CycleLimit> limitsOf(const Job& job) {
-    std::vector<CycleLimit> limits = job.cycle.limits;
+std::vector<CycleLimit> limitsOf(const Job& job, const Family& family) {
+    std::vector<CycleLimit> limits = limitsFor(job.cycle, family);
     const bool has_furnace =
         std::any_of(limits.begin(), limits.end(), [](const CycleLimit& one) { return one.kind == "furnace"; });
     if (!has_furnace && !job.furnace.id.isEmpty()) {
@@ -164,7 +195,7 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
     const auto& data = shelf.data_sets.at(family.data_set);
     const DataSetFacts& known = facts(*data);
     sayWhatIsLeftOut(answer, job.heat.analysis, known);
-    const auto limits = limitsOf(job);
+    const auto limits = limitsOf(job, family);
     const Chemistry chemistry = chemistryOf(job.heat.analysis, known);
     answer.chemistry_wt = chemistry.wt;
 
@@ -175,8 +206,9 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
     context.missing = missingElements(job.heat.analysis, family, row, known);
     context.furnace = job.furnace;
     context.reference_C = job.cycle.setpoint_C;
-    const bool needs_physics =
-        std::any_of(limits.begin(), limits.end(), [](const CycleLimit& one) { return isComputedKind(one.kind); });
+    context.soak_min = soakByRule_min(job);
+    if (row) context.grade_names = row->names + row->near_names;
+    const bool needs_physics = std::any_of(limits.begin(), limits.end(), needsPhysics);
     const SetUse& use = shelf.book.uses.at(family.data_set);
     context.report_missing = whyNotCovered(job.heat.analysis, known, use);
     if (needs_physics && context.missing.isEmpty() && context.report_missing.isEmpty()) {
@@ -195,12 +227,24 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
             (made.side == Side::floor ? answer.floors : answer.ceilings).push_back(std::move(made));
         }
     if (context.report && job.keep_sweep) answer.sweep = context.report->sweep();
+    answer.soak =
+        soakOf({&answer, &context, job.heat.section_mm, job.heat.product_form, job.furnace.kind, context.soak_min});
+    for (const auto& [element, content] : job.heat.analysis)
+        if (content.wt && knows(known, element))
+            answer.sigma_wt[element] = std::hypot(
+                rounding_wt(content), content.less_than ? 0 : shelf.book.laboratory_wt(element, *content.wt));
+    if (job.cycle.kind == "harden" || job.cycle.kind == "normalise")
+        answer.quench_outlook = quenchOutlook(context, {answer.band.low_C, answer.setpoint_C, answer.band.high_C});
+    const auto quenches = quenchesOf(job, shelf);
+    answer.cooling = coolingOf(
+        {&answer.floors, &limits, &context, answer.band.low_C, job.heat.section_mm, job.heat.product_form, &quenches});
 }
 
 void sayEvidence(WindowAnswer& answer) {
     QStringList thin;
     for (const auto* side : {&answer.floors, &answer.ceilings})
         for (const Limit& limit : *side) {
+            if (!limit.disagreement.isEmpty()) answer.remarks << limit.cause + ": " + limit.disagreement;
             if (!limit.temperature_C || limit.remark.isEmpty()) continue;
             if (limit.remark.startsWith("little evidence"))
                 thin << limit.cause;
@@ -248,15 +292,16 @@ QString familyOf(const Job& job, const Shelf& shelf) {
     return row ? row->family : QString();
 }
 
-bool isJudged(const QString& cycle_kind) {
-    static const QStringList kinds{"solution-anneal", "harden", "full-anneal", "normalise"};
-    return kinds.contains(cycle_kind);
+std::vector<CycleLimit> limitsFor(const Cycle& cycle, const Family& family) {
+    if (!cycle.limits.empty()) return cycle.limits;
+    const FamilyKind* kind = family.find(cycle.kind);
+    return kind ? kind->limits : std::vector<CycleLimit>{};
 }
 
 Result<Shelf> makeShelf(std::vector<Grade> grades, std::vector<PublishedTreatment> published, ShopRules rules) {
     auto book = loadFamilyBook();
     if (!book) return std::move(book).error();
-    Shelf shelf{{}, std::move(grades), std::move(published), std::move(book).value(), std::move(rules)};
+    Shelf shelf{{}, std::move(grades), std::move(published), std::move(book).value(), std::move(rules), {}, {}};
     for (const Family& family : shelf.book.families) {
         if (shelf.data_sets.count(family.data_set)) continue;
         if (!shelf.book.uses.count(family.data_set))
@@ -292,15 +337,17 @@ Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cach
     WindowAnswer answer = begin(job, familyOf(job, shelf));
     answer.grade_check = checkGrade(job.heat, shelf.grades);
     if (row) answer.published = publishedRanges(shelf, *row, job.cycle.kind);
-    if (!isJudged(job.cycle.kind)) return notComputed(answer, "this kind is not judged yet (" + job.cycle.kind + ")");
     if (answer.family.isEmpty())
         return notComputed(answer, "grade \"" + job.heat.grade + "\" is not in the library; name a family");
     const Family* family = shelf.book.find(answer.family);
-    if (!family) return notComputed(answer, "the family \"" + answer.family + "\" is not judged yet");
+    if (!family) return notComputed(answer, "the family \"" + answer.family + "\" is not in data/families.toml");
     const DataSetFacts& known = facts(*shelf.data_sets.at(family->data_set));
     answer.data_set = QString::fromStdString(known.name);
     answer.data_version = QString::fromStdString(known.version);
     if (!family->phase_rule.isEmpty()) answer.remarks << family->phase_rule;
+    if (limitsFor(job.cycle, *family).empty())
+        return notComputed(answer, "the cycle has no limits, and none are known for \"" + job.cycle.kind +
+                                       "\" of the family " + answer.family + "; give the cycle its limits");
 
     auto band = bandOrSetpoint(job.furnace, answer.setpoint_C, shelf.rules);
     if (!band) return std::move(band).error();
@@ -315,6 +362,8 @@ Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cach
         answer.suggested_setpoint_C = suggestSetpoint(answer, job.furnace, shelf.rules, job.cycle.setpoint_C);
         decide(answer, job.furnace, shelf.rules);  // again: the reason may name the suggestion
     }
+    answer.chance_inside = chanceInside(answer);
+    answer.remedies = remediesFor(answer, job.furnace, shelf.furnaces, job.cycle.furnaces, shelf.rules);
     sayEvidence(answer);
     if (row && answer.verdict == Verdict::notComputed) sayWhatIf(answer, job, shelf, *family, *row, cache);
     return answer;
@@ -326,7 +375,9 @@ Result<WindowAnswer> atSetpoint(WindowAnswer answer, const Furnace& furnace, con
     if (!band) return std::move(band).error();
     answer.band = std::move(band).value();
     answer.setpoint_C = setpoint_C;
-    if (!answer.floors.empty() || !answer.ceilings.empty()) decide(answer, furnace, rules);
+    if (answer.floors.empty() && answer.ceilings.empty()) return answer;
+    decide(answer, furnace, rules);
+    answer.chance_inside = chanceInside(answer);
     return answer;
 }
 

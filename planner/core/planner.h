@@ -17,6 +17,8 @@ struct Shelf {
     std::vector<PublishedTreatment> published;
     FamilyBook book;
     ShopRules rules;
+    std::vector<Quench> quenches;   ///< of the shop; the first that cycle and furnace share is used
+    std::vector<Furnace> furnaces;  ///< of the shop: where else an answer that is not inside would fit
 };
 /// The planner's own tables and the assessed data that its families need; grades and rules are the caller's.
 Result<Shelf> makeShelf(std::vector<Grade> grades, std::vector<PublishedTreatment> published, ShopRules rules);
@@ -52,7 +54,7 @@ Result<WindowAnswer> atSetpoint(WindowAnswer answer, const Furnace& furnace, con
 /// The family that the answer will use: the job's own, else the grade's; empty when neither is known.
 QString familyOf(const Job& job, const Shelf& shelf);
 
-/// Kinds of cycle that are judged end to end; every other kind answers "this kind is not judged yet".
-bool isJudged(const QString& cycle_kind);
+/// What a cycle without limits of its own is judged by: those of the family for this kind of treatment.
+std::vector<CycleLimit> limitsFor(const Cycle& cycle, const Family& family);
 
 }  // namespace soak

@@ -22,6 +22,17 @@ double martensiteStart_C(const std::map<std::string, double>& austenite_wt) {
            11.3 * wt("Cu") + 8.58 * wt("Co") + 7.4 * wt("W") - 14.5 * wt("Si") - 273.15;
 }
 
+double quenchedHardness_HRC(const State& state, const Relation& relation) {
+    const auto range = relation.range.find("C");
+    const double low = range == relation.range.end() ? 0 : range->second.low_wt.value_or(0);
+    const double high = range == relation.range.end() ? 1e9 : range->second.high_wt.value_or(1e9);
+    const PhaseAmount* austenite = state.find("austenite");
+    double wt = low;
+    if (austenite)
+        if (const auto carbon = austenite->wt.find("C"); carbon != austenite->wt.end()) wt = carbon->second;
+    return relation.formula.value({{"C", std::clamp(wt, low, high)}}).value_or(0);
+}
+
 // f = exp(-0.011 (Ms - Tq)), Tq between Ms and about -80 degC
 // D.P. Koistinen, R.E. Marburger, Acta Metall. 7 (1959) 59-60 (constant read second-hand; steels of 0.37 to 1.1 % C).
 double retainedAustenite_vol(const State& state, double quenched_to_C) {

@@ -99,6 +99,9 @@ void fillQuench(SheetContent& sheet, const SheetRequest& request) {
     if (quench && quench->transfer_max_s > 0)
         sheet.medium_limits
             << QString("door to fully under took at most %1 when measured").arg(withUnit(quench->transfer_max_s, "s"));
+    const CoolingAnswer& cooling = request.answer.cooling;
+    if (cooling.allowed_s && quench && quench->transfer_max_s > 0)
+        sheet.max_delay = Quantity{std::floor(*cooling.allowed_s + 1e-6), 0, "s"};
 }
 
 void fillWhy(SheetContent& sheet, const SheetRequest& request, const UnitsOf& units) {

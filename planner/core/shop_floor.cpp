@@ -17,7 +17,14 @@ Result<Shelf> shelfFrom(const Store& store, const QDate& today) {
     rules.tight_set_K = shop.value().tight_set_K;
     rules.tight_computed_K = shop.value().tight_computed_K;
     rules.today = today.isValid() ? today : shop.value().today;
-    return makeShelf(std::move(grades).value(), std::move(published).value(), rules);
+    auto quenches = store.quenches();
+    if (!quenches) return std::move(quenches).error();
+    auto shelf = makeShelf(std::move(grades).value(), std::move(published).value(), rules);
+    auto furnaces = store.furnaces();
+    if (!furnaces) return std::move(furnaces).error();
+    if (shelf) shelf.value().quenches = std::move(quenches).value();
+    if (shelf) shelf.value().furnaces = std::move(furnaces).value();
+    return shelf;
 }
 
 Result<Job> jobFrom(const Store& store, const QString& heat, const QString& cycle, const QString& furnace) {

@@ -3,11 +3,11 @@
 _soakwright() {
     local word=${COMP_WORDS[COMP_CWORD]} before=${COMP_WORDS[COMP_CWORD - 1]} options=""
     if [ "$COMP_CWORD" -eq 1 ]; then
-        mapfile -t COMPREPLY < <(compgen -W "state sweep window triage import sheet packet verify evidence cycle store help --version" -- "$word")
+        mapfile -t COMPREPLY < <(compgen -W "state sweep window triage import sheet packet verify grade load run look-back trend evidence cycle store help --version" -- "$word")
         return
     fi
     case $before in
-        --store | --csv | --pdf | --xlsx | --write | --baseline | --own | --copy | --password-file | --new-password-file)
+        --store | --csv | --pdf | --xlsx | --write | --baseline | --own | --copy | --log | --password-file | --new-password-file)
             mapfile -t COMPREPLY < <(compgen -f -- "$word")
             return ;;
         --sheets | --templates)
@@ -28,6 +28,11 @@ _soakwright() {
         sheet) options="--store --heat --cycle --furnace --pdf --xlsx --setpoint --paper --issue --language --second --record --templates --band-rule --date --json" ;;
         packet) options="--store --sheet --revision --pdf" ;;
         verify) options="--store --copy --json" ;;
+        grade) options="--grade --cycle --furnace --store --samples --fresh --seed --threads --date --band-rule --json" ;;
+        load) options="--heats --furnace --store --date --band-rule --json" ;;
+        run) options="--heat --cycle --furnace --store --log --soak-start --soak-end --door --under --load-sensor --control-sensor --setpoint --date --band-rule --json" ;;
+        look-back) options="--furnace --error --known --since --until --store --json" ;;
+        trend) options="--store --elements --date --json" ;;
         evidence) options="--family --kind --write --baseline --own --weigh-own --json" ;;
         import) options="--store --preview --supplier --columns --by --why --undo --date --password-file --json" ;;
         cycle) options="history approve freeze unfreeze withdraw --store --revision --by --why --customer --date --password-file --json" ;;

@@ -1,5 +1,6 @@
 // SPDX-License-Identifier: GPL-3.0-or-later
 // The command as scripts use it: fields, exit status, refusals.
+#include <QFile>
 #include <QProcess>
 #include <QTemporaryDir>
 #include <catch2/catch.hpp>
@@ -45,7 +46,8 @@ TEST_CASE("version and help") {
     CHECK(soakwright({"--version"}).out.startsWith("soakwright " SOAKWRIGHT_VERSION));
     const Run help = soakwright({"help"});
     CHECK(help.status == 0);
-    for (const char* word : {"state", "sweep", "window", "triage", "sheet", "store new"})
+    for (const char* word :
+         {"state", "sweep", "window", "triage", "sheet", "store new", "grade", "load", "run", "look-back", "trend"})
         CHECK(help.out.contains(word));
     CHECK(soakwright({}).status == 2);
     CHECK(soakwright({"anneal"}).status == 2);
@@ -197,9 +199,16 @@ TEST_CASE("window refuses what it cannot judge, and says so") {
     const Run temper =
         soakwright({"window", "--wt", "C=0.4,Mn=0.8", "--family", "low-alloy", "--kind", "temper", "--json"});
     CHECK(temper.status == 0);
-    CHECK(temper.json()["verdict"] == "not computed");
-    CHECK(temper.json()["window"].is_null());
-    CHECK(QString::fromStdString(temper.json()["reason"]).contains("this kind is not judged yet"));
+    CHECK(temper.json()["verdict"] == "inside");
+    CHECK(temper.json()["ceilings"][0]["kind"] == "below_ae1");
+    const Json& opinion = temper.json()["ceilings"][0]["opinions"][0];
+    for (const char* field : {"quantity", "name", "temperature_C", "scatter_K", "in_range", "outside", "source"})
+        CHECK(opinion.contains(field));
+    const Run unknown =
+        soakwright({"window", "--wt", "C=0.4,Mn=0.8", "--family", "low-alloy", "--kind", "polish", "--json"});
+    CHECK(unknown.json()["verdict"] == "not computed");
+    CHECK(unknown.json()["window"].is_null());
+    CHECK(QString::fromStdString(unknown.json()["reason"]).contains("no limits"));
 }
 
 TEST_CASE("window from the store, by names") {
@@ -316,4 +325,46 @@ TEST_CASE("import: preview changes nothing, an import is stored and undone as on
     const Run columns = soakwright({"import", mill, "--store", store, "--preview", "--json", "--columns", "N2=N %"});
     CHECK(columns.status == 1);
     CHECK(columns.json()["heats"] == 0);
+}
+
+TEST_CASE("load: charges with their setpoints, and heats that cannot be named") {
+    const QStringList base{"load", "--store", demoStore(), "--furnace", "F2"};
+    const Run run = soakwright(base + QStringList{"--heats", "K40217:SA-300, 503118:SA-300", "--json"});
+    REQUIRE(run.status == 0);
+    const Json plan = run.json();
+    REQUIRE(plan["groups"].size() == 1);
+    for (const char* field : {"heats", "setpoint_C", "low_C", "high_C", "margin_K", "lower_by", "upper_by", "soak_min"})
+        CHECK(plan["groups"][0].contains(field));
+    CHECK(plan["groups"][0]["heats"].size() == 2);
+    CHECK(soakwright(base + QStringList{"--heats", "K40217:SA-XX"}).status == 2);
+    CHECK(soakwright(base).status == 2);
+}
+
+TEST_CASE("run: the record of a chart against the window, and times that cannot be read") {
+    QTemporaryDir folder;
+    QFile log(folder.filePath("chart.csv"));
+    REQUIRE(log.open(QIODevice::WriteOnly));
+    log.write("time,sensor,read_C\n10:05,CT,1060\n10:05,LT1,900\n11:20,LT1,1060\n14:00,CT,1060\n14:00,LT1,1060\n");
+    log.close();
+    const QStringList base{"run",       "--store", demoStore(), "--heat",       "K40217",       "--cycle", "SA-300",
+                           "--furnace", "F2",      "--log",     log.fileName(), "--soak-start", "10:05"};
+    const Run early = soakwright(base + QStringList{"--json"});
+    CHECK(early.status == 1);
+    CHECK(early.json()["fits"] == false);
+    CHECK(early.json()["soak_min"].get<double>() == 160);
+    CHECK(QString::fromStdString(early.json()["sentence"]).contains("too early"));
+    const Run bad = soakwright(base + QStringList{"--door", "noon"});
+    CHECK(bad.status == 2);
+    CHECK(bad.err.contains("noon"));
+}
+
+TEST_CASE("look-back and trend: empty answers are answers, wrong words are refused") {
+    const Run none = soakwright({"look-back", "--store", demoStore(), "--furnace", "F1", "--error", "9", "--json"});
+    CHECK(none.status == 0);
+    CHECK(none.json()["loads"].empty());
+    CHECK(soakwright({"look-back", "--store", demoStore(), "--furnace", "F9", "--error", "9"}).status == 2);
+    CHECK(soakwright({"trend", "--store", demoStore()}).status == 2);
+    CHECK(soakwright({"trend", "--store", demoStore(), "april.csv"}).err.contains("DATE:SUPPLIER:FILE"));
+    CHECK(soakwright({"grade", "--store", demoStore(), "--grade", "1.4462", "--cycle", "SA-22", "--furnace", "F2"})
+              .err.contains("en-1.4462"));
 }
