@@ -47,6 +47,13 @@ Result<FreezingPath> AlloyReport::freezing(const FreezingChoice& choice) {
     return path;
 }
 
+Result<InterdendriticMelting> AlloyReport::meltingAfter(const std::map<std::string, double>& last_liquid_wt,
+                                                        const std::map<std::string, double>& left, double from_K,
+                                                        double to_K) {
+    if (!alloy_) return noEngine();
+    return meltingAfterHold(*alloy_, last_liquid_wt, left, from_K, to_K);
+}
+
 Result<Alloy> AlloyReport::changed(const std::string& element, double wt) const {
     if (!alloy_) return noEngine();
     Chemistry moved = alloy_->chemistry();

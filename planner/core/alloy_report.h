@@ -5,6 +5,7 @@
 #include <memory>
 
 #include "planner/core/window.h"
+#include "thermo/back_diffusion.h"
 #include "thermo/scheil.h"
 
 namespace soak {
@@ -30,6 +31,9 @@ public:
     Result<State> stateAt(double temperature_K);
     /// How the melt freezes between dendrites, computed once.
     Result<FreezingPath> freezing(const FreezingChoice& choice);
+    /// First melting between dendrites with part of the segregation left; see thermo/back_diffusion.h.
+    Result<InterdendriticMelting> meltingAfter(const std::map<std::string, double>& last_liquid_wt,
+                                               const std::map<std::string, double>& left, double from_K, double to_K);
     /// The same alloy with another content of one element. Fault::data when only a stored sweep is at hand.
     Result<Alloy> changed(const std::string& element, double wt) const;
 

@@ -33,9 +33,9 @@ const SubjectRow kSubjects[] = {
     {"treatment: harden high-speed steel", "", "", "high-speed", "harden"},
     {"treatment: anneal or normalise", "", "", "", "normalise|full-anneal"},
     {"medium: nitrate salt bath, aluminium", "", "nitrate", "light-"},
-    {"treatment: aluminium solution", "", "", "light-", "solution-anneal|homogenise"},
+    {"treatment: aluminium solution", "", "", "light-", "solution-anneal|homogenise|re-solution"},
     {"treatment: aluminium quench", "water|polymer", "", "light-", "solution-anneal"},
-    {"treatment: aluminium castings", "", "", "light-cast-", "solution-anneal|homogenise"},
+    {"treatment: aluminium castings", "", "", "light-cast-", "solution-anneal|homogenise|re-solution"},
     {"treatment: aluminium ageing", "", "", "light-", "age"},
 };
 

@@ -10,6 +10,7 @@
 #include <set>
 
 #include "base/units.h"
+#include "planner/core/families.h"
 
 namespace soak {
 namespace {
@@ -128,6 +129,20 @@ Result<double> solidus(const Case& one) {
     for (const Event& event : sweep.value().events)
         if (event.kind == EventKind::appears && event.phase == "liquid") return celsius(event.temperature_K);
     return noEvent("no first melting");
+}
+
+/// As cast: where the segregated metal freezes last, by the rule of its data set; homogenised: the solidus.
+Result<double> firstMelting(const Case& one) {
+    if (one.row.phase == "homogenised") return solidus(one);
+    static const Result<FamilyBook> book = loadFamilyBook();
+    if (!book) return book.error();
+    const auto rule = book.value().segregation.find(QString::fromStdString(one.known.name));
+    if (rule == book.value().segregation.end()) return because("no rule of freezing for this data set");
+    const auto alloy = one.alloy(one.sample);
+    if (!alloy) return alloy.error();
+    const auto path = freeze(alloy.value(), one.to_K(), rule->second.freezing);
+    if (!path) return path.error();
+    return celsius(path.value().end_K);
 }
 
 Result<double> appearance(const Case& one) {
@@ -483,6 +498,7 @@ PhaseChoice choiceOf(const EvidenceRow& row, const DataSetFacts& known) {
 using Evaluator = Result<double> (*)(const Case&);
 const std::map<QString, Evaluator> kEvaluators{{"liquidus", liquidus},
                                                {"solidus", solidus},
+                                               {"first_melting", firstMelting},
                                                {"transformation", transformation},
                                                {"Ac1", appearance},
                                                {"Ac3", solvus},
@@ -501,6 +517,7 @@ const std::map<QString, Evaluator> kEvaluators{{"liquidus", liquidus},
 QString phasesOf(const EvidenceRow& row) {
     if (row.quantity == "Ac1") return "austenite";
     if (row.quantity == "Ac3") return "ferrite";
+    if (row.quantity == "first_melting") return "liquid";
     return row.phase == "bcc miscibility gap" ? QString("bcc") : row.phase;
 }
 

@@ -21,6 +21,7 @@ using Rows = std::vector<const EvidenceRow*>;
 /// The limits that a row speaks for: "dissolved(M23C6)".
 QStringList limitsOf(const EvidenceRow& row) {
     if (row.kind == "solidus") return {"below_solidus"};
+    if (row.kind == "first_melting") return {"below_segregated_solidus", "below_stepped_solidus"};
     if (row.kind == "Ae1") return {"above_ae1", "below_ae1"};
     if (row.kind == "Ae3") return {"above_ae3"};
     if (row.kind == "delta_limit") return {"not_yet_formed(delta ferrite)"};

@@ -109,6 +109,12 @@ Result<Done> readBooks(FamilyBook& book) {
     auto kinetics = loadKinetics();
     if (!kinetics) return std::move(kinetics).error();
     book.kinetics = std::move(kinetics).value();
+    auto notes = loadSheetNotes();
+    if (!notes) return std::move(notes).error();
+    book.sheet_notes = std::move(notes).value();
+    auto quench = loadQuenchBook();
+    if (!quench) return std::move(quench).error();
+    book.quench = std::move(quench).value();
     auto tempering = loadTemperingCurves();
     if (!tempering) return std::move(tempering).error();
     book.tempering = std::move(tempering).value();

@@ -9,8 +9,10 @@
 #include "db/records.h"
 #include "planner/core/cooling_rules.h"
 #include "planner/core/kinetics.h"
+#include "planner/core/quench_factor.h"
 #include "planner/core/relations.h"
 #include "planner/core/salvage.h"
+#include "planner/core/sheet_notes.h"
 #include "planner/core/tempering.h"
 #include "thermo/alloy.h"
 #include "thermo/scheil.h"
@@ -86,6 +88,8 @@ struct FamilyBook {
     KineticBook kinetics;                                 ///< diffusion, conduction, heat transfer
     std::vector<TemperingCurve> tempering;                ///< published hardness after tempering and ageing
     std::vector<SalvageRule> salvage;                     ///< what may be done with a load that went wrong
+    std::vector<SheetNote> sheet_notes;                   ///< lines for the sheet by family, treatment and furnace
+    QuenchBook quench;                                    ///< C-curves and films of the quench
     std::vector<ParticleSize> particles;                  ///< sizes of particles that hold grains
 
     const Family* find(const QString& name) const;

@@ -37,6 +37,7 @@ std::vector<Limit> dissolvedLimit(const CycleLimit& limit, const LimitContext& c
 std::vector<Limit> notYetFormedLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> solidusLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> segregatedSolidusLimit(const CycleLimit& limit, const LimitContext& context);
+std::vector<Limit> steppedSolidusLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> firstAusteniteLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> lastFerriteLimit(const CycleLimit& limit, const LimitContext& context);
 std::vector<Limit> fractionLimit(const CycleLimit& limit, const LimitContext& context);

@@ -101,6 +101,7 @@ constexpr Kind kKinds[] = {
     {u"not_yet_formed", Side::ceiling, true, notYetFormedLimit},
     {u"below_solidus", Side::ceiling, true, solidusLimit},
     {u"below_segregated_solidus", Side::ceiling, true, segregatedSolidusLimit},
+    {u"below_stepped_solidus", Side::ceiling, true, steppedSolidusLimit},
     {u"above_ae1", Side::floor, true, firstAusteniteLimit},
     {u"below_ae1", Side::ceiling, true, firstAusteniteLimit},
     {u"above_ae3", Side::floor, true, lastFerriteLimit},
@@ -124,6 +125,7 @@ QString plainCause(const CycleLimit& limit) {
     if (limit.kind == "not_yet_formed") return limit.phase + " not yet formed";
     if (limit.kind == "below_solidus") return "solidus";
     if (limit.kind == "below_segregated_solidus") return "segregated solidus";
+    if (limit.kind == "below_stepped_solidus") return "first melting after the lower step";
     if (limit.kind == "grain_pinned") return "grain held by " + limit.phase;
     if (limit.kind == "above_ae3") return "Ae3";
     if (limit.kind == "above_ae1" || limit.kind == "below_ae1") return "Ae1";

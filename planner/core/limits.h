@@ -12,6 +12,9 @@ namespace soak {
 //   not_yet_formed       ceiling  the lowest temperature above which `phase` forms from the matrix, - margin
 //   below_solidus        ceiling  first liquid on heating, - margin
 //   below_segregated_solidus  ceiling  the last liquid of the segregated metal on freezing, - margin (thermo/scheil.h)
+//   below_stepped_solidus  ceiling  first melting between the dendrites after a lower step of at least `low` hours at
+//                                 `high` °C, - margin; `phase` is the arm spacing in um, else that of castings in
+//                                 data/thermal.toml (thermo/back_diffusion.h)
 //   above_ae1, above_ae3 floor    first austenite, last ferrite on heating, + margin (negative: so far below)
 //   below_ae1            ceiling  first austenite on heating, - margin
 //   fraction             both     vol% of `phase` at least `low` and at most `high`

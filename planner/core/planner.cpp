@@ -240,6 +240,27 @@ void computeLimits(WindowAnswer& answer, const Job& job, const Shelf& shelf, con
         {&answer.floors, &limits, &context, answer.band.low_C, job.heat.section_mm, job.heat.product_form, &quenches});
 }
 
+/// What the way to the quench and the quench cost in strength, where a C-curve of the grade is published.
+void sayQuenchCost(WindowAnswer& answer, const Job& job, const Shelf& shelf, const Grade* row) {
+    const auto quenches = quenchesOf(job, shelf);
+    const CCurve* curve = row ? shelf.book.quench.curveOf(row->names) : nullptr;
+    const Metal* metal = shelf.book.kinetics.metalOf(answer.family);
+    if (!curve || !metal || quenches.empty() || !job.heat.section_mm || answer.band.rule.isEmpty()) return;
+    const Quench& quench = quenches.front();
+    const auto medium = shelf.book.quench.filmOf(quench.medium);
+    if (!medium) return;
+    const bool round = job.heat.product_form == "bar" || job.heat.product_form == "ring";
+    const double air = shelf.book.kinetics.transferOf("still air").convection_W_per_m2K;
+    const QuenchCost cost = quenchCost(*curve, *metal, *job.heat.section_mm, round, answer.band.low_C,
+                                       quench.transfer_max_s, {20, air, metal->emissivity}, *medium);
+    answer.remarks << QString(
+                          "quench of %1 in %2: quench factor %3 in the middle of %4, %5 of it on the way; about %6 of "
+                          "the strength of temper %7 is kept (rule of thumb: %8)")
+                          .arg(row->names.first(), quench.id, number(cost.factor, 1),
+                               withUnit(*job.heat.section_mm, "mm"), number(cost.factor_on_the_way, 1),
+                               withUnit(std::floor(100 * cost.kept), "%"), curve->temper, curve->source);
+}
+
 void sayEvidence(WindowAnswer& answer) {
     QStringList thin;
     for (const auto* side : {&answer.floors, &answer.ceilings})
@@ -348,6 +369,11 @@ Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cach
     if (limitsFor(job.cycle, *family).empty())
         return notComputed(answer, "the cycle has no limits, and none are known for \"" + job.cycle.kind +
                                        "\" of the family " + answer.family + "; give the cycle its limits");
+    const auto notes = [&](const char* place) {
+        return notesFor(shelf.book.sheet_notes, place, family->name, job.cycle.kind, job.furnace.kind);
+    };
+    answer.if_wrong = notes("if wrong");
+    answer.load_notes = notes("load");
 
     auto band = bandOrSetpoint(job.furnace, answer.setpoint_C, shelf.rules);
     if (!band) return std::move(band).error();
@@ -364,6 +390,7 @@ Result<WindowAnswer> judge(const Job& job, const Shelf& shelf, ReportCache& cach
     }
     answer.chance_inside = chanceInside(answer);
     answer.remedies = remediesFor(answer, job.furnace, shelf.furnaces, job.cycle.furnaces, shelf.rules);
+    sayQuenchCost(answer, job, shelf, row);
     sayEvidence(answer);
     if (row && answer.verdict == Verdict::notComputed) sayWhatIf(answer, job, shelf, *family, *row, cache);
     return answer;

@@ -143,6 +143,8 @@ void fillFurnace(SheetContent& sheet, const SheetRequest& request, const UnitsOf
     if (answer.high_C) sheet.never_above = units.temperature(*answer.high_C, down);
     if (furnace.maximum_load_kg > 0)
         sheet.load_notes << "at most " + withUnit(furnace.maximum_load_kg, "kg") + ", pieces apart";
+    sheet.load_notes << answer.load_notes;
+    sheet.if_wrong = answer.if_wrong;
     sheet.thermocouple_notes << "compare " + kLoadSensor + " with an independent reading";
     if (!furnace.work_zone_mm.isEmpty()) {
         LoadSketch sketch;

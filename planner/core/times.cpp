@@ -52,13 +52,20 @@ const PhaseAmount* lastSeen(const Sweep& sweep, const std::string& label, double
     return seen;
 }
 
-/// The matrix through which what dissolves must spread: the larger of austenite and ferrite at that temperature.
+/// The matrix through which what dissolves must spread: the largest one at that temperature; all kinds of ferrite are
+/// one.
 QString matrixAt(const Sweep& sweep, double T_K) {
     const auto above = std::find_if(sweep.states.begin(), sweep.states.end(),
                                     [&](const State& state) { return state.temperature_K >= T_K; });
-    if (above == sweep.states.end()) return "austenite";
-    const double ferrite = above->volumeFraction("ferrite") + above->volumeFraction("delta ferrite");
-    return ferrite > above->volumeFraction("austenite") ? "ferrite" : "austenite";
+    const State& state = above == sweep.states.end() ? sweep.states.back() : *above;
+    std::map<QString, double> amounts;
+    for (const std::string& label : state.matrixLabels) {
+        const QString name = QString::fromStdString(label);
+        amounts[name.contains("ferrite") ? "ferrite" : name] += state.volumeFraction(label);
+    }
+    const auto most = std::max_element(amounts.begin(), amounts.end(),
+                                       [](const auto& a, const auto& b) { return a.second < b.second; });
+    return most == amounts.end() ? QString() : most->first;
 }
 
 struct Dissolution {

@@ -162,6 +162,7 @@ struct WindowAnswer {
     std::map<std::string, double> chemistry_wt;  ///< what went into the equilibrium, wt%
     QStringList left_out;                        ///< elements kept and grade-checked, not in the equilibrium: "P 0.024"
     QStringList remarks;                         ///< little evidence, what-if, extrapolation
+    QStringList if_wrong, load_notes;            ///< lines for the sheet, by family, treatment and furnace
     QStringList published;                       ///< published ranges of the grade, as information
     QString data_set, data_version, program_version;
     std::optional<Sweep> sweep;  ///< for the rail; Kelvin

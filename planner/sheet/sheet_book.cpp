@@ -126,11 +126,11 @@ void writeHead(Lines& lines, const SheetContent& content) {
     lines.text(lines.name("setpoint.furnace"), content.furnace);
 }
 
-struct Metal {
+struct MetalCells {
     Cell low, high;
 };
 
-Metal writeMetal(Lines& lines, const SheetContent& content) {
+MetalCells writeMetal(Lines& lines, const SheetContent& content) {
     lines.heading("setpoint.heading");
     const Cell set = lines.quantity(lines.name("setpoint.heading"), content.setpoint);
     const auto follows = [&](const TwoUnits& metal) {
@@ -186,7 +186,7 @@ void writeQuench(Lines& lines, const SheetContent& content) {
                            "=AND(ISNUMBER(" + took.fixed() + ")," + took.fixed() + ">" + most.fixed() + ")", kMissed);
 }
 
-void writeWhy(Lines& lines, const SheetContent& content, const Metal& metal) {
+void writeWhy(Lines& lines, const SheetContent& content, const MetalCells& metal) {
     lines.heading("why.heading");
     lines.text(lines.words().word("verdict", word(content.verdict).replace(' ', '_')), content.verdict_sentence);
     for (const SheetLimit& limit : content.binding) {
@@ -237,7 +237,7 @@ Result<Done> writeSheetWorkbook(const SheetContent& content, const SheetOptions&
     worksheet_fit_to_pages(sheet, 1, 0);
     Lines lines(book, sheet, templates.value());
     writeHead(lines, content);
-    const Metal metal = writeMetal(lines, content);
+    const MetalCells metal = writeMetal(lines, content);
     writeSoak(lines, content);
     writeQuench(lines, content);
     writeWhy(lines, content, metal);

@@ -45,10 +45,11 @@ TEST_CASE("the demonstration shop comes back from its store as it was written", 
     CHECK(must(store.quenches()).size() == 5 + 4);
     CHECK(must(store.heats()).size() == 56 + 31);
     CHECK(names(must(store.cycles())) ==
-          QStringList{"SA-300",  "SA-321",  "SA-22",   "SA-25",   "SA-6A",   "SA-8M",   "ST-174", "H-410",   "N-91",
-                      "T-91",    "H-42",    "T-42",    "C-18",    "H-D2",    "H-13",    "H-M2",   "SL-2024", "SL-2014",
-                      "SL-2219", "SL-2618", "SL-2011", "SL-7075", "SL-7050", "SL-7020", "SL-61",  "SL-60",   "SL-356",
-                      "SL-357",  "SL-450",  "SL-206",  "SL-520",  "AN-5083", "AN-3003"});
+          QStringList{"SA-300",  "SA-321",  "SA-22",   "SA-25",   "SA-6A",   "SA-8M",   "ST-174",  "H-410",
+                      "N-91",    "T-91",    "H-42",    "T-42",    "C-18",    "H-D2",    "H-13",    "H-M2",
+                      "SL-2024", "SL-2014", "SL-2219", "SL-2618", "SL-2011", "SL-7075", "SL-7050", "SL-7020",
+                      "SL-61",   "SL-60",   "SL-356",  "SL-357",  "SL-450",  "SL-206",  "SL-520",  "AN-5083",
+                      "AN-3003", "SS-450",  "HO-2024", "HO-7050", "AG-61",   "RC-2024"});
 }
 
 TEST_CASE("furnaces keep surveys with sign, controller unit and overdue dates", "[demo]") {

@@ -170,3 +170,60 @@ TEST_CASE("light: a steel's chemistry under an aluminium grade is refused") {
     CHECK(answer.value().reason.contains("an alloy of Fe"));
     CHECK(answer.value().grade_check.verdict == "fails");
 }
+
+TEST_CASE("light: Al-Si-Cu castings with 0.04 and 0.45 Mg: the ceilings differ by tens of kelvin") {
+    // la260, la261: Q melts at 505 °C in the casting rich in magnesium, Al2Cu at 540 °C in the one that is nearly
+    // without (J. Gauthier, F.H. Samuel et al., J. Mater. Sci. 33 (1998) 2283-2297). Without a hold the traces of
+    // magnesium in the last liquid bring the lean one down as well; a hold at a lower step gives it its room back.
+    const double rich_C = event_C(ask("C4502", "SL-450", "L1"), "segregated solidus");
+    CHECK(rich_C == Approx(505).margin(6));
+    const WindowAnswer lean = ask("C4501", "SS-450", "L1");
+    const double lean_C = event_C(lean, "first melting after the lower step");
+    CHECK(lean_C == Approx(540).margin(15));
+    CHECK(lean_C - rich_C > 20);
+    CHECK(event_C(ask("C4501", "SL-450", "L1"), "segregated solidus") > rich_C + 4);
+    CHECK(limitOf(lean, "first melting after")->remark.contains("after 6.0"));
+}
+
+TEST_CASE("light: cast slabs melt at their eutectics until they are homogenised, and dispersoids stay") {
+    // la224: 502 °C for 2024; la251: 477 °C for unhomogenised 7xxx with copper.
+    const WindowAnswer slab = ask("A2402", "HO-2024", "L1");
+    CHECK(event_C(slab, "segregated solidus") == Approx(502).margin(12));
+    CHECK(slab.reason.contains("segregated solidus"));
+    const WindowAnswer zinc = ask("A7511", "HO-7050", "L1");
+    CHECK(event_C(zinc, "segregated solidus") == Approx(477).margin(10));
+    CHECK(event_C(zinc, "segregated solidus") < event_C(ask("A7511", "SL-7050", "L1"), "solidus") - 20);
+    for (const auto& [answer, phase] : {std::pair{&slab, "Al20Cu2Mn3"}, {&zinc, "Al3Zr"}}) {
+        const Limit* kept = limitOf(*answer, phase);
+        REQUIRE(kept);
+        CHECK_FALSE(kept->impossible);
+    }
+}
+
+TEST_CASE("light: A206 goes to its upper step only after the lower one") {
+    // la058: 511 to 515 °C for 2 h, then 527 °C; one step at 527 would melt the cast metal.
+    const WindowAnswer answer = ask("C2061", "SL-206", "L1");
+    const Limit* stepped = limitOf(answer, "first melting after the lower step");
+    REQUIRE(stepped);
+    REQUIRE(stepped->temperature_C);
+    CHECK(*stepped->temperature_C > 527);
+    CHECK(stepped->remark.contains("the cast metal begins to melt at 51"));
+}
+
+TEST_CASE("light: the quench delay of the table against the manipulator that was timed") {
+    // AMS 2770 (la303): 15 s over 2.29 mm; LW2 took 22 s, LW1 8 s.
+    const WindowAnswer slow = ask("A7501", "SL-7075", "L2"), quick = ask("A7501", "SL-7075", "L1");
+    CHECK(slow.cooling.set_s.value() == 15);
+    CHECK(slow.cooling.too_slow);
+    CHECK_FALSE(quick.cooling.too_slow);
+    // C-curve of 7075-T6: a plate of 38 mm loses some of its strength even in cold water, and more in warm.
+    CHECK(quick.remarks.join(' ').contains("quench of 7075 in LW1: quench factor"));
+    CHECK(slow.remarks.join(' ').contains("quench of 7075 in LW2: quench factor"));
+}
+
+TEST_CASE("light: artificial ageing and the re-solution of clad sheet are judged like any other cycle") {
+    CHECK(ask("A6101", "AG-61", "L4").verdict == Verdict::inside);
+    const WindowAnswer again = ask("A2401", "RC-2024", "L1");
+    CHECK((again.verdict == Verdict::inside || again.verdict == Verdict::tight));
+    CHECK(ask("A2403", "RC-2024", "L1").verdict == Verdict::noWindow);
+}

@@ -201,7 +201,7 @@ TEST_CASE("window refuses what it cannot judge, and says so") {
     CHECK(temper.status == 0);
     CHECK(temper.json()["verdict"] == "inside");
     CHECK(temper.json()["ceilings"][0]["kind"] == "below_ae1");
-    const Json& opinion = temper.json()["ceilings"][0]["opinions"][0];
+    const Json opinion = temper.json()["ceilings"][0]["opinions"][0];
     for (const char* field : {"quantity", "name", "temperature_C", "scatter_K", "in_range", "outside", "source"})
         CHECK(opinion.contains(field));
     const Run unknown =
