@@ -10,6 +10,10 @@
 namespace soak {
 namespace {
 
+/// A slope says what a small change does. Where an amount hardly changes with temperature a straight line would run
+/// on for thousands of kelvin, which says no more than "anywhere in the range".
+constexpr double kFarthest_K = 300;
+
 QString marginText(double margin_K, Side side) {
     if (margin_K == 0) return {};
     const bool up = (side == Side::floor) == (margin_K > 0);
@@ -92,10 +96,10 @@ Limit limitAt(Limit limit, const Event& event, const LimitContext& context, cons
             laboratory += std::pow(K_per_wt * context.book->laboratory_wt(element, *at->second.wt), 2);
     }
     const ModelScatter scatter = context.book->scatterOf(context.family, limit.kind, limit.phase);
-    limit.certificate_K = std::sqrt(certificate);
-    limit.laboratory_K = std::sqrt(laboratory);
-    limit.model_K = model_K(scatter, limit.side, slope);
-    limit.uncertainty_K = std::sqrt(certificate + laboratory + limit.model_K * limit.model_K);
+    limit.certificate_K = std::min(std::sqrt(certificate), kFarthest_K);
+    limit.laboratory_K = std::min(std::sqrt(laboratory), kFarthest_K);
+    limit.model_K = std::min(model_K(scatter, limit.side, slope), kFarthest_K);
+    limit.uncertainty_K = std::hypot(limit.certificate_K, limit.laboratory_K, limit.model_K);
     if (scatter.rows < 5 && limit.remark.isEmpty())
         limit.remark = scatter.rows == 0 ? QString("little evidence: ") + scatter.source
                                          : QString("little evidence: %1 published values").arg(scatter.rows);

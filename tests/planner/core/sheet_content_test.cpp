@@ -136,7 +136,10 @@ TEST_CASE("a sheet's JSON changes with its contents") {
 }
 
 TEST_CASE("a sheet comes back from its JSON as it was, and from an older program's as far as it goes") {
-    SheetContent sheet = makeSheet(request());
+    SheetRequest asked = request();
+    asked.job.furnace.work_zone_mm = "900 x 1200 x 800";
+    SheetContent sheet = makeSheet(asked);
+    REQUIRE(sheet.sketch);
     sheet.heats[0].pieces = 4;
     sheet.max_delay = Quantity{60, 0, "s"};
     sheet.deference << "ask the foreman";
