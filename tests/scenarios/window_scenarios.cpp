@@ -67,7 +67,8 @@ TEST_CASE("3: F2407/3 has the higher sigma floor of the two castings, driven by 
     CHECK(rich.verdict != Verdict::inside);
     CHECK(lean.verdict != Verdict::inside);  // tight: the sigma solvus is known to 50 K only
     // Expected: tight or outside in F1, better in F2. Computed: the ferrite of this heat passes 65 vol% below its sigma
-    // floor, so that no furnace helps. The specification's 1100 degC lies just above the sigma floor and is named first.
+    // floor, so that no furnace helps. The specification's 1100 degC lies just above the sigma floor and is named
+    // first.
     CHECK(rich.verdict == Verdict::noWindow);
     CHECK(*rich_sigma->temperature_C == Approx(1094).margin(15));
     CHECK(rich.reason.contains("1100"));
