@@ -31,7 +31,7 @@ QString all(const TriageRow& row) { return row.reason + " " + row.findings.join(
 }  // namespace
 
 // The delivery's oddities are intended; its notes say what a careful tool should do with each.
-TEST_CASE("7: every row of the delivery is answered, refused ones with line, column and reason") {
+TEST_CASE("7: every row of the delivery is answered, refused ones with line, column and reason", "[delivery]") {
     std::set<QString> heats;
     for (const TriageRow& row : answers()) {
         heats.insert(row.heat);
@@ -61,7 +61,7 @@ TEST_CASE("7: every row of the delivery is answered, refused ones with line, col
         CHECK(rowOf(held).verdict == Verdict::notComputed);
 }
 
-TEST_CASE("triage: worst first, and every kind of cycle is judged") {
+TEST_CASE("triage: worst first, and every kind of cycle is judged", "[delivery]") {
     double last = -1e9;
     for (const TriageRow& row : answers()) {
         const bool has_margin =
